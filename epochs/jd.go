@@ -1,0 +1,80 @@
+package epochs
+
+import (
+	"math"
+	"math/big"
+	"strings"
+)
+
+// JD is a Julian date held in two parts whose sum is the date, so that no
+// step of a conversion loses digits: near J2000 a single float64 steps by 40
+// microseconds, the two parts resolve better than 0.01 ns.
+//
+// A JD made by NewJD has a whole-numbered Day and a Frac in [-0.5, 0.5). The
+// zero value is JD 0 (noon of 1 January 4713 BC, Julian calendar). JD itself
+// names no time scale: UTC, TT and the other scale types below wrap it.
+type JD struct {
+	Day  float64 // whole number of days
+	Frac float64 // remainder in days
+}
+
+// NewJD returns the sum of two numbers of days, normalised without loss.
+func NewJD(a, b float64) JD {
+	wholeA, wholeB := math.Round(a), math.Round(b)
+	fraction := (a - wholeA) + (b - wholeB)
+	carry := math.Floor(fraction + 0.5)
+	return JD{Day: wholeA + wholeB + carry, Frac: fraction - carry}
+}
+
+// Float returns the Julian date as one float64, with a step of 40
+// microseconds near J2000.
+func (d JD) Float() float64 { return d.Day + d.Frac }
+
+// Add returns d moved by a number of days.
+func (d JD) Add(days float64) JD { return NewJD(d.Day, d.Frac+days) }
+
+// AddSeconds returns d moved by a number of seconds of 86400 to the day.
+func (d JD) AddSeconds(s float64) JD { return d.Add(s / SecondsPerDay) }
+
+// Sub returns d - other in days.
+func (d JD) Sub(other JD) float64 { return (d.Day - other.Day) + (d.Frac - other.Frac) }
+
+// Text returns the date in decimal digits with the given number of
+// decimals, rounded half to even on the exact binary value of the two parts.
+func (d JD) Text(decimals int) string {
+	sum := new(big.Float).SetPrec(200)
+	sum.Add(new(big.Float).SetPrec(200).SetFloat64(d.Day), new(big.Float).SetPrec(200).SetFloat64(d.Frac))
+	text := sum.Text('f', decimals)
+	if strings.Trim(text, "-0.") == "" { // no negative zero
+		return strings.TrimPrefix(text, "-")
+	}
+	return text
+}
+
+// IsFinite reports whether both parts are finite numbers.
+func (d JD) IsFinite() bool {
+	return !math.IsNaN(d.Day+d.Frac) && !math.IsInf(d.Day, 0) && !math.IsInf(d.Frac, 0)
+}
+
+// SecondsPerDay is the length of a day of any uniform scale, in its seconds.
+const SecondsPerDay = 86400.0
+
+// The time scales. Each type is a Julian date on that scale; the methods
+// that lead from one to another are the only way across.
+type (
+	// UTC is Coordinated Universal Time as a quasi Julian date: on a day
+	// that ends with a leap second the day is stretched to 86401 s, the
+	// convention of ERFA's eraUtctai. Before 1960 it does not exist.
+	UTC struct{ JD }
+	// UT1 is Universal Time, the rotation angle of the Earth; for dates
+	// before 1960 also what was printed as G.M.T. or U.T.
+	UT1 struct{ JD }
+	// TAI is International Atomic Time.
+	TAI struct{ JD }
+	// TT is Terrestrial Time (before 1984 Ephemeris Time, "ET").
+	TT struct{ JD }
+	// TDB is Barycentric Dynamical Time (IAU 2006 Resolution B3).
+	TDB struct{ JD }
+	// TCB is Barycentric Coordinate Time.
+	TCB struct{ JD }
+)
