@@ -2,8 +2,7 @@ package epochs
 
 import (
 	"math"
-	"math/big"
-	"strings"
+	"strconv"
 )
 
 // JD is a Julian date held in two parts whose sum is the date, so that no
@@ -39,17 +38,52 @@ func (d JD) AddSeconds(s float64) JD { return d.Add(s / SecondsPerDay) }
 // Sub returns d - other in days.
 func (d JD) Sub(other JD) float64 { return (d.Day - other.Day) + (d.Frac - other.Frac) }
 
-// Text returns the date in decimal digits with the given number of
-// decimals, rounded half to even on the exact binary value of the two parts.
+// Text returns the date in decimal digits with the given number of decimals,
+// 0 to 15, rounded half to even on the exact binary value of the two parts.
 func (d JD) Text(decimals int) string {
-	sum := new(big.Float).SetPrec(200)
-	sum.Add(new(big.Float).SetPrec(200).SetFloat64(d.Day), new(big.Float).SetPrec(200).SetFloat64(d.Frac))
-	text := sum.Text('f', decimals)
-	if strings.Trim(text, "-0.") == "" { // no negative zero
-		return strings.TrimPrefix(text, "-")
-	}
-	return text
+	return string(d.AppendText(nil, decimals))
 }
+
+// AppendText appends to dst what Text returns, and returns the longer slice.
+func (d JD) AppendText(dst []byte, decimals int) []byte {
+	if decimals < 0 || decimals > 15 {
+		panic("epochs: a date has 0 to 15 decimals")
+	}
+	d = NewJD(d.Day, d.Frac)
+	if !d.IsFinite() || d.Day < 1 || d.Day > 1e15 {
+		return strconv.AppendFloat(dst, d.Float(), 'f', decimals, 64)
+	}
+	scale := powersOfTen[decimals]
+	product := float64(d.Frac * scale)
+	lost := math.FMA(d.Frac, scale, -product) // product + lost is exact
+	units := math.RoundToEven(product)
+	switch rest := product - units; {
+	case rest == 0.5 && lost > 0:
+		units++
+	case rest == -0.5 && lost < 0:
+		units--
+	}
+	day := int64(d.Day)
+	if units < 0 {
+		day, units = day-1, units+scale
+	}
+	if units >= scale {
+		day, units = day+1, units-scale
+	}
+	dst = strconv.AppendInt(dst, day, 10)
+	if decimals == 0 {
+		return dst
+	}
+	dst = append(dst, '.')
+	digits := strconv.AppendInt(nil, int64(units), 10)
+	for range decimals - len(digits) {
+		dst = append(dst, '0')
+	}
+	return append(dst, digits...)
+}
+
+// powersOfTen holds 10^0 to 10^15, each exact in a float64.
+var powersOfTen = [16]float64{1, 1e1, 1e2, 1e3, 1e4, 1e5, 1e6, 1e7, 1e8, 1e9, 1e10, 1e11, 1e12, 1e13, 1e14, 1e15}
 
 // IsFinite reports whether both parts are finite numbers.
 func (d JD) IsFinite() bool {
