@@ -75,7 +75,8 @@ func (d JD) AppendText(dst []byte, decimals int) []byte {
 		return dst
 	}
 	dst = append(dst, '.')
-	digits := strconv.AppendInt(nil, int64(units), 10)
+	var buffer [16]byte
+	digits := strconv.AppendInt(buffer[:0], int64(units), 10)
 	for range decimals - len(digits) {
 		dst = append(dst, '0')
 	}
