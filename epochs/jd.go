@@ -29,8 +29,12 @@ func NewJD(a, b float64) JD {
 // microseconds near J2000.
 func (d JD) Float() float64 { return d.Day + d.Frac }
 
-// Add returns d moved by a number of days.
-func (d JD) Add(days float64) JD { return NewJD(d.Day, d.Frac+days) }
+// Add returns d moved by a number of days, of which whole days go to the
+// whole part: an offset of 2400000 leaves every digit of the fraction.
+func (d JD) Add(days float64) JD {
+	whole := math.Round(days)
+	return NewJD(d.Day+whole, d.Frac+(days-whole))
+}
 
 // AddSeconds returns d moved by a number of seconds of 86400 to the day.
 func (d JD) AddSeconds(s float64) JD { return d.Add(s / SecondsPerDay) }
