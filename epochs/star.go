@@ -64,6 +64,8 @@ type spaceMotion struct {
 	velocityAuD vector
 	lightDays   float64 // from placeAu
 	inverseAu   float64 // 1/distance for the curvature of the wavefront, 0 = plane
+	slowing     float64 // sqrt(1 - v^2/c^2) - 1
+	startKms    float64 // radial velocity at placeAu
 }
 
 // spaceMotion changes catalogue values to place and velocity. The observed
@@ -95,13 +97,16 @@ func (s Star) spaceMotion() spaceMotion {
 	radial := radialKmS * SecondsPerDay / auKm
 	velocity := trueVelocity(direction, radial, transverse)
 
-	return spaceMotion{
+	m := spaceMotion{
 		epoch:       NewJD(2451545, (epoch-2000)*daysPerJulianYear),
 		placeAu:     direction.times(distance),
 		velocityAuD: velocity,
 		lightDays:   distance / lightAuDay,
 		inverseAu:   inverseAu,
 	}
+	m.slowing = timeDilation(velocity.dot(velocity) / (lightAuDay * lightAuDay))
+	m.startKms = m.radialVelocityKms(direction)
+	return m
 }
 
 // tangents returns the unit vectors towards increasing right ascension and
@@ -125,7 +130,7 @@ func trueVelocity(direction vector, radial float64, transverse vector) vector {
 	for range 100 {
 		before := trueRadial + trueTransverse
 		stretch := 1 + trueRadial
-		slowing := timeDilation(trueRadial, trueTransverse)
+		slowing := timeDilation(square(trueRadial) + square(trueTransverse))
 		trueRadial = stretch*observedRadial + slowing
 		trueTransverse = stretch * observedTransverse
 		if math.Abs(trueRadial+trueTransverse-before) <= 1e-17 {
@@ -135,10 +140,9 @@ func trueVelocity(direction vector, radial float64, transverse vector) vector {
 	return direction.times(trueRadial * lightAuDay).plus(transverse.times(1 + trueRadial))
 }
 
-// timeDilation returns sqrt(1 - b^2) - 1 without cancellation.
-func timeDilation(radial, transverse float64) float64 {
-	square := radial*radial + transverse*transverse
-	return -square / (math.Sqrt(1-square) + 1)
+// timeDilation returns sqrt(1 - b^2) - 1 for b^2, without cancellation.
+func timeDilation(betaSquare float64) float64 {
+	return -betaSquare / (math.Sqrt(1-betaSquare) + 1)
 }
 
 // at returns the place, in au about the barycentre, from which the light
@@ -157,28 +161,21 @@ func (m *spaceMotion) at(tdb JD) vector {
 }
 
 // radialVelocityKms returns the radial velocity that the barycentre would
-// observe with the star at a place: the Doppler shift of Stumpff 1985, eq. 4.
-func (m *spaceMotion) radialVelocityKms(placeAu vector) float64 {
-	radial, transverse := m.split(placeAu.unit())
-	return lightKmS * (radial - timeDilation(radial, transverse)) / (1 + radial)
-}
-
-// split returns the radial and transverse parts of the velocity in units of
-// that of light.
-func (m *spaceMotion) split(direction vector) (radial, transverse float64) {
-	radial = m.velocityAuD.dot(direction) / lightAuDay
-	across := m.velocityAuD.minus(direction.times(radial * lightAuDay))
-	return radial, across.length() / lightAuDay
+// observe with the star in a direction: the Doppler shift of Stumpff 1985, eq.
+// 4.
+func (m *spaceMotion) radialVelocityKms(direction vector) float64 {
+	radial := m.velocityAuD.dot(direction) / lightAuDay
+	return lightKmS * (radial - m.slowing) / (1 + radial)
 }
 
 // perspectiveMs returns by how much the radial velocity has changed since
-// the epoch of the star's position because the line of sight has turned and
-// the distance changed, in m/s; 0 when the parallax is not known.
-func (m *spaceMotion) perspectiveMs(placeAu vector) float64 {
+// the epoch of the star's position because the line of sight has turned, in
+// m/s; 0 when the parallax is not known.
+func (m *spaceMotion) perspectiveMs(direction vector) float64 {
 	if m.inverseAu == 0 {
 		return 0
 	}
-	return (m.radialVelocityKms(placeAu) - m.radialVelocityKms(m.placeAu)) * 1e3
+	return (m.radialVelocityKms(direction) - m.startKms) * 1e3
 }
 
 // AtEpoch returns the star as a catalogue of another epoch would give it:
@@ -202,14 +199,14 @@ func (s *Star) setMotion(m *spaceMotion, placeAu vector) {
 	direction := placeAu.unit()
 	s.setDirection(placeAu)
 	east, north := tangents(s.RADeg*radPerDeg, s.DecDeg*radPerDeg)
-	radial, _ := m.split(direction)
+	radial := m.velocityAuD.dot(direction) / lightAuDay
 	observed := m.velocityAuD.times(1 / (1 + radial) / placeAu.length())
 	masYr := daysPerJulianYear / (1e-3 * radPerArcsec)
 	s.PMRAMasYr = observed.dot(east) * masYr
 	s.PMDecMasYr = observed.dot(north) * masYr
 	if m.inverseAu > 0 {
 		s.ParallaxMas *= m.placeAu.length() / placeAu.length()
-		s.SystemicKms = m.radialVelocityKms(placeAu)
+		s.SystemicKms = m.radialVelocityKms(direction)
 	}
 }
 

@@ -145,13 +145,13 @@ func precessed(s Star, jd float64) vector {
 func TestPerspectiveAcceleration(t *testing.T) {
 	s := Star{RADeg: 269.45, DecDeg: 4.69, PMRAMasYr: -801.551, PMDecMasYr: 10362.394, ParallaxMas: 546.9759}
 	m := s.spaceMotion()
-	year := m.perspectiveMs(m.at(NewJD(2451545, 365.25)))
+	year := m.perspectiveMs(m.at(NewJD(2451545, 365.25)).unit())
 	near(t, "m/s in the first year", year, 4.5388, 1e-3)
-	near(t, "m/s before", m.perspectiveMs(m.at(NewJD(2451545, -365.25))), -4.5388, 1e-3)
+	near(t, "m/s before", m.perspectiveMs(m.at(NewJD(2451545, -365.25)).unit()), -4.5388, 1e-3)
 
 	s.ParallaxMas = 0
 	m = s.spaceMotion()
-	if got := m.perspectiveMs(m.at(NewJD(2451545, 36525))); got != 0 {
+	if got := m.perspectiveMs(m.at(NewJD(2451545, 36525)).unit()); got != 0 {
 		t.Errorf("without a parallax the perspective is not known, got %v m/s", got)
 	}
 }

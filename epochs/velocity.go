@@ -4,7 +4,6 @@ import (
 	"errors"
 	"fmt"
 	"math"
-	"strings"
 )
 
 // ErrVelocity is what every error about a published velocity unwraps to.
@@ -27,7 +26,7 @@ var frameWords = []string{"observatory", "geocentric", "heliocentric", "barycent
 // String returns the word of a plan for the frame.
 func (f Frame) String() string { return wordOf(int(f), frameWords) }
 
-// ParseFrame reads the word of a plan. The error unwraps to ErrVelocity and
+// ParseFrame reads the word of a plan. The error unwraps to ErrWord and
 // lists the accepted words.
 func ParseFrame(word string) (Frame, error) {
 	i, err := findWord("velocity frame", word, frameWords)
@@ -51,26 +50,10 @@ var conventionWords = []string{"optical", "relativistic", "radio"}
 func (c VelocityConvention) String() string { return wordOf(int(c), conventionWords) }
 
 // ParseVelocityConvention reads the word of a plan. The error unwraps to
-// ErrVelocity and lists the accepted words.
+// ErrWord and lists the accepted words.
 func ParseVelocityConvention(word string) (VelocityConvention, error) {
 	i, err := findWord("velocity convention", word, conventionWords)
 	return VelocityConvention(i), err
-}
-
-func wordOf(i int, words []string) string {
-	if i < 0 || i >= len(words) {
-		return fmt.Sprintf("unknown (%d)", i)
-	}
-	return words[i]
-}
-
-func findWord(what, word string, words []string) (int, error) {
-	for i, w := range words {
-		if strings.EqualFold(strings.TrimSpace(word), w) {
-			return i, nil
-		}
-	}
-	return 0, fmt.Errorf("%w: %s %q, accepted: %s", ErrVelocity, what, word, strings.Join(words, ", "))
 }
 
 // SolarMotion is the motion of the Sun against a local standard of rest.
@@ -200,7 +183,7 @@ func (c *Converter) BarycentricVelocity(v PublishedVelocity, e Epoch, site *Site
 func (c *Converter) velocity(v *PublishedVelocity, view *scene) BarycentricVelocity {
 	var b BarycentricVelocity
 	b.SunAlongSightMs = view.sunKmS.dot(view.toStar) * 1e3
-	b.PerspectiveSinceEpochMs = c.motion.perspectiveMs(view.starAu)
+	b.PerspectiveSinceEpochMs = c.motion.perspectiveMs(view.toStar)
 	shift := v.shift()
 	b.Terms.ConventionMs = (shift*lightKmS - v.Kms) * 1e3
 	correction := b.correction(v, view)
