@@ -57,8 +57,8 @@ SEED = 19251960
 
 AU_KM = 149597870.7
 C_KMS = 299792.458
-GM_SUN = 1.32712442099e11  # km^3/s^2, TDB-compatible (IERS Conventions 2010)
-GM_EARTH = 398600.4418
+GM_SUN = 1.32712440041e11  # km^3/s^2, TDB-compatible (IAU 2009 constants)
+GM_EARTH = 398600.4418  # km^3/s^2 (IERS Conventions 2010)
 YEAR_1960 = 2436934.5
 DEG = math.pi / 180
 MAS = DEG / 3600e3
