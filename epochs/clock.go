@@ -7,13 +7,12 @@ import (
 
 // instant is a moment at the observer on the scales that the sky needs.
 type instant struct {
-	tt          TT
-	ut          UT1
-	tdbMinusTTS float64   // s
-	deltaTS     float64   // TT - UT1, s
-	sigmaS      float64   // standard uncertainty of tt, s
-	zoneS       float64   // added to the stamp to reach Greenwich, s
-	flags       EpochFlag // those that come from the clock
+	tt      TT
+	ut      UT1
+	deltaTS float64   // TT - UT1, s
+	sigmaS  float64   // standard uncertainty of tt, s
+	zoneS   float64   // added to the stamp to reach Greenwich, s
+	flags   EpochFlag // those that come from the clock
 }
 
 // utcStart is 1960 January 1, 0h: the first day of UTC.
@@ -21,10 +20,7 @@ const utcStart = 2436934.5
 
 // instant returns the moment of an epoch.
 func (e *Epoch) instant() instant {
-	return instant{
-		tt: e.ObserverTT, ut: e.ObserverUT1,
-		tdbMinusTTS: e.Terms.TDBMinusTTS, deltaTS: e.Terms.DeltaTS,
-	}
+	return instant{tt: e.ObserverTT, ut: e.ObserverUT1, deltaTS: e.Terms.DeltaTS}
 }
 
 // instantOf reads a clock into n. clock is the reading on the scale of the stamp; s
@@ -48,11 +44,7 @@ func (c *Converter) instantOf(n *instant, clock JD, s *Stamp, site *Site) error 
 	default:
 		err = c.fromUniform(n, clock, s)
 	}
-	if err != nil {
-		return err
-	}
-	n.tdbMinusTTS = tdbMinusTT(n.tt)
-	return nil
+	return err
 }
 
 // fromUTC takes a clock on UTC; before 1960 the label is an anachronism for
@@ -89,19 +81,11 @@ func (c *Converter) rotationFromUTC(n *instant, utc UTC) error {
 // leapSeconds returns TAI - UTC in seconds at an instant from 1960 on; on the
 // day of a leap second the value before it.
 func leapSeconds(utc JD) (float64, error) {
-	if utc.Float() < leapSecondsStart {
-		tai, err := UTC{utc}.TAI() // a drifting rate, no stretched days
-		return tai.Sub(utc) * SecondsPerDay, err
-	}
-	midnight := NewJD(math.Floor(utc.Day+utc.Frac+0.5), -0.5)
-	tai, err := UTC{midnight}.TAI()
-	return tai.Sub(midnight) * SecondsPerDay, err
+	mjd, fraction := mjdOf(utc)
+	return taiMinusUTC(mjd, fraction)
 }
 
-const (
-	ttMinusTAIS      = 32.184    // IAU 1991 Resolution A4
-	leapSecondsStart = 2441317.5 // 1972 January 1, 0h
-)
+const ttMinusTAIS = 32.184 // IAU 1991 Resolution A4
 
 // fromUT takes a clock on Universal Time or a civil time derived from it.
 // From 1960 on what is printed as UT or zone time is UTC, without the

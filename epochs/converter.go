@@ -95,7 +95,7 @@ type Converter struct {
 	motion    spaceMotion
 	ephemeris Ephemeris
 	options   Options
-	axes      axesTable
+	days      dayTable
 	sites     atomic.Pointer[[]knownSite]
 }
 
@@ -161,9 +161,7 @@ func (c *Converter) Epoch(s Stamp, site *Site) (Epoch, error) {
 }
 
 // Convert is Epoch and BarycentricVelocity of one row in one call, in little
-// more than half the time because the sky is looked up once. A
-// FrameGeocentric velocity made at a site is treated as BarycentricVelocity
-// does.
+// more than half the time because the sky is looked up once.
 func (c *Converter) Convert(s Stamp, v PublishedVelocity, site *Site) (Epoch, BarycentricVelocity, error) {
 	var e Epoch
 	var view scene
@@ -173,8 +171,12 @@ func (c *Converter) Convert(s Stamp, v PublishedVelocity, site *Site) (Epoch, Ba
 	if err := c.epoch(&e, &view, &s, site); err != nil {
 		return Epoch{}, BarycentricVelocity{}, err
 	}
-	if v.Frame != FrameTopocentric {
-		view.siteKm, view.siteKmS = vector{}, vector{}
+	if v.Frame == FrameGeocentric && site != nil { // the velocity knows no site
+		now := e.instant()
+		view = scene{}
+		if err := c.look(&view, &now, nil); err != nil {
+			return Epoch{}, BarycentricVelocity{}, err
+		}
 	}
 	return e, c.velocity(&v, &view), nil
 }
@@ -216,7 +218,7 @@ func (c *Converter) epoch(e *Epoch, view *scene, s *Stamp, site *Site) error {
 		}
 	}
 	now.tt, now.ut = TT{now.tt.AddSeconds(-stepS)}, UT1{now.ut.AddSeconds(-stepS)}
-	e.finish(s, &now, lightS)
+	e.finish(s, &now, view.tdbMinusTTS, lightS)
 	if site == nil && s.Place == PlaceObservatory {
 		e.Flags |= FlagGeocentric
 	}
@@ -228,7 +230,7 @@ func (c *Converter) epoch(e *Epoch, view *scene, s *Stamp, site *Site) error {
 func square(x float64) float64 { return x * x }
 
 // finish adds up the terms.
-func (e *Epoch) finish(s *Stamp, now *instant, lightS float64) {
+func (e *Epoch) finish(s *Stamp, now *instant, tdbMinusTTS, lightS float64) {
 	e.Flags |= now.flags
 	if s.Place == PlaceHeliocentre || s.Place == PlaceBarycentre {
 		e.Flags |= FlagStampReduced
@@ -237,9 +239,9 @@ func (e *Epoch) finish(s *Stamp, now *instant, lightS float64) {
 	e.Terms.StampLightTimeS = lightS
 	e.Terms.ZoneS = now.zoneS
 	e.Terms.DeltaTS = now.deltaTS
-	e.Terms.TDBMinusTTS = now.tdbMinusTTS
+	e.Terms.TDBMinusTTS = tdbMinusTTS
 	e.Terms.TTMinusStampS = now.tt.Sub(s.JD) * SecondsPerDay
-	e.BJD = TDB{now.tt.AddSeconds(now.tdbMinusTTS + e.Terms.BarycentreMinusObserverS())}
+	e.BJD = TDB{now.tt.AddSeconds(tdbMinusTTS + e.Terms.BarycentreMinusObserverS())}
 }
 
 // The fixed point clock = stamp - light time(clock), by Newton's steps. The
@@ -316,19 +318,28 @@ func (c *Converter) ground(site *Site) (*groundedSite, error) {
 
 // look fills in where everything is.
 func (c *Converter) look(s *scene, now *instant, site *groundedSite) error {
-	tdb := now.tt.AddSeconds(now.tdbMinusTTS)
+	day := c.days.at(now.tt.JD)
+	tdb := now.tt.AddSeconds(day.tdbMinusTTS)
 	state, err := c.ephemeris.At(tdb.Day, tdb.Frac)
 	if err != nil {
 		return err
 	}
+	s.tdbMinusTTS = day.tdbMinusTTS
 	s.earthKm, s.earthKmS = state.EarthKm, state.EarthKmS
 	s.sunKm, s.sunKmS = state.SunKm, state.SunKmS
 	s.starAu, s.inverseAu = c.motion.at(tdb), c.motion.inverseAu
 	s.toStar = s.starAu.unit()
+	s.observerKm, s.potentialKm2S2 = s.earthKm, earthGMKm3S2/earthMeanRadiusKm
 	if site != nil {
-		axes := c.axes.at(now.tt.JD)
 		place, velocity := site.onAxesOfDate(earthRotationAngle(now.ut))
-		s.siteKm, s.siteKmS = axes.transposedTimes(place), axes.transposedTimes(velocity)
+		s.siteKm, s.siteKmS = day.axes.transposedTimes(place), day.axes.transposedTimes(velocity)
+		s.observerKm = s.earthKm.plus(s.siteKm)
+		s.potentialKm2S2 = site.potentialKm2S2
+		// A clock at the site against one at the Earth's centre, up to 2.1
+		// microseconds (Moyer 1981, Celest. Mech. 23, 33, eq. 46).
+		s.tdbMinusTTS += s.earthKmS.dot(s.siteKm) / (lightKmS * lightKmS)
 	}
+	s.toSunKm = s.sunKm.minus(s.observerKm)
+	s.sunDistanceKm = s.toSunKm.length()
 	return nil
 }

@@ -83,56 +83,67 @@ func axesOfDate(tt JD) matrix {
 	return aboutZ(precessionInRA(t) + equationOfEquinoxes).after(equinox)
 }
 
-// The span of axesTable: JD 2396736 is in 1849, the end is in 2106. Outside
-// it the matrix is computed anew each time.
+// The span of dayTable: JD 2396736 is in 1849, the end is in 2106. Outside it
+// the values are computed anew each time.
 const (
-	axesFirstDay    = 2396736
-	axesSegmentDays = 32
-	axesSegments    = 2940
+	tableFirstDay    = 2396736
+	tableSegmentDays = 32
+	tableSegments    = 2940
 )
 
-// axesTable interpolates axesOfDate between daily values, kept in segments
-// that are computed when first needed. The shortest large nutation term has
-// a period of 13.7 days and 0.23 arcsec: straight lines between daily values
-// err by less than 7 mas. It is safe for concurrent use: two goroutines may
-// compute the same segment, and either result serves.
-type axesTable struct {
-	segments [axesSegments]atomic.Pointer[axesSegment]
+// dayTable interpolates what changes slowly, axesOfDate and TDB - TT, between
+// daily values, kept in segments that are computed when first needed. The
+// shortest large nutation term has a period of 13.7 days and 0.23 arcsec:
+// straight lines between daily values err by less than 7 mas, those of TDB - TT
+// by less than 0.1 microseconds. It is safe for concurrent use: two goroutines
+// may compute the same segment, and either result serves.
+type dayTable struct {
+	segments [tableSegments]atomic.Pointer[tableSegment]
 }
 
-type axesSegment [axesSegmentDays + 1]matrix
+type tableSegment [tableSegmentDays + 1]dayValues
 
-func (t *axesTable) at(tt JD) matrix {
-	days := (tt.Day - axesFirstDay) + tt.Frac
-	if !(days >= 0 && days < axesSegments*axesSegmentDays) {
-		return axesOfDate(tt)
+// dayValues are those of one instant.
+type dayValues struct {
+	axes        matrix
+	tdbMinusTTS float64 // at the Earth's centre
+}
+
+func valuesOfDay(tt JD) dayValues { return dayValues{axesOfDate(tt), tdbMinusTT(TT{tt})} }
+
+func (t *dayTable) at(tt JD) dayValues {
+	days := (tt.Day - tableFirstDay) + tt.Frac
+	if !(days >= 0 && days < tableSegments*tableSegmentDays) {
+		return valuesOfDay(tt)
 	}
 	whole := int(days)
-	segment := t.segment(whole / axesSegmentDays)
-	index := whole % axesSegmentDays
+	segment := t.segment(whole / tableSegmentDays)
+	index := whole % tableSegmentDays
 	return mixed(&segment[index], &segment[index+1], days-float64(whole))
 }
 
-func (t *axesTable) segment(number int) *axesSegment {
+func (t *dayTable) segment(number int) *tableSegment {
 	if segment := t.segments[number].Load(); segment != nil {
 		return segment
 	}
-	segment := new(axesSegment)
+	segment := new(tableSegment)
 	for i := range segment {
-		segment[i] = axesOfDate(JD{Day: axesFirstDay + float64(number*axesSegmentDays+i)})
+		segment[i] = valuesOfDay(JD{Day: tableFirstDay + float64(number*tableSegmentDays+i)})
 	}
 	t.segments[number].Store(segment)
 	return segment
 }
 
-// mixed interpolates two nearly equal rotations element by element; the
-// departure from a rotation is of second order in the nutation of one day.
-func mixed(a, b *matrix, share float64) matrix {
-	var m matrix
+// mixed interpolates between two days. Nearly equal rotations are mixed
+// element by element; the departure from a rotation is of second order in the
+// nutation of one day.
+func mixed(a, b *dayValues, share float64) dayValues {
+	var v dayValues
 	for i := range 3 {
-		m[i][0] = a[i][0] + share*(b[i][0]-a[i][0])
-		m[i][1] = a[i][1] + share*(b[i][1]-a[i][1])
-		m[i][2] = a[i][2] + share*(b[i][2]-a[i][2])
+		v.axes[i][0] = a.axes[i][0] + share*(b.axes[i][0]-a.axes[i][0])
+		v.axes[i][1] = a.axes[i][1] + share*(b.axes[i][1]-a.axes[i][1])
+		v.axes[i][2] = a.axes[i][2] + share*(b.axes[i][2]-a.axes[i][2])
 	}
-	return m
+	v.tdbMinusTTS = a.tdbMinusTTS + share*(b.tdbMinusTTS-a.tdbMinusTTS)
+	return v
 }

@@ -50,10 +50,12 @@ func TestApparentSiderealTime(t *testing.T) {
 }
 
 func TestInterpolatedAxes(t *testing.T) {
-	var table axesTable
+	var table dayTable
 	for i := range 400 {
 		date := NewJD(2396700+float64(i)*241.37, 0.313*float64(i%3)) // 1849 to 2113, past both ends
-		got, want := table.at(date), axesOfDate(date)
+		values := table.at(date)
+		got, want := values.axes, axesOfDate(date)
+		near(t, date.Text(2)+" TDB - TT, s", values.tdbMinusTTS, tdbMinusTT(TT{date}), 1e-7)
 		for row := range 3 {
 			for column := range 3 {
 				near(t, date.Text(2), got[row][column], want[row][column], 0.01*radPerArcsec)

@@ -19,7 +19,7 @@ type JD struct {
 
 // NewJD returns the sum of two numbers of days, normalised without loss.
 func NewJD(a, b float64) JD {
-	wholeA, wholeB := math.Round(a), math.Round(b)
+	wholeA, wholeB := math.RoundToEven(a), math.RoundToEven(b) // one instruction each
 	fraction := (a - wholeA) + (b - wholeB)
 	carry := math.Floor(fraction + 0.5)
 	return JD{Day: wholeA + wholeB + carry, Frac: fraction - carry}
@@ -32,7 +32,7 @@ func (d JD) Float() float64 { return d.Day + d.Frac }
 // Add returns d moved by a number of days, of which whole days go to the
 // whole part: an offset of 2400000 leaves every digit of the fraction.
 func (d JD) Add(days float64) JD {
-	whole := math.Round(days)
+	whole := math.RoundToEven(days)
 	return NewJD(d.Day+whole, d.Frac+(days-whole))
 }
 
@@ -66,6 +66,8 @@ func (d JD) AppendText(dst []byte, decimals int) []byte {
 		units++
 	case rest == -0.5 && lost < 0:
 		units--
+	case decimals == 0 && product == -0.5 && math.Mod(d.Day, 2) != 0:
+		units-- // half way between two days: the day before is the even one
 	}
 	day := int64(d.Day)
 	if units < 0 {

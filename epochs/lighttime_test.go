@@ -5,6 +5,14 @@ import (
 	"testing"
 )
 
+// observedFrom is the sky of an observer about a Sun at the barycentre.
+func observedFrom(observerKm, toStar vector) scene {
+	return scene{
+		earthKm: observerKm, observerKm: observerKm, toStar: toStar,
+		toSunKm: observerKm.times(-1), sunDistanceKm: observerKm.length(),
+	}
+}
+
 // Fermat: rays stand upright on the surfaces of equal arrival time, so the
 // gradient of the delay by the Sun, across the line of sight, is the bending of
 // the ray. Source of the bending: liberfa/erfa src/t_erfa_c.c (Oct 2025),
@@ -17,7 +25,7 @@ func TestShapiroBendsLight(t *testing.T) {
 	bent := vector{-0.7632762580731413169, -0.6086337635262647900, -0.2167355419322321302}
 
 	delayS := func(observer vector) float64 {
-		s := scene{earthKm: observer, toStar: p.unit()}
+		s := observedFrom(observer, p.unit())
 		var terms LightTime
 		s.lightTime(&terms)
 		return -terms.ShapiroS
@@ -41,7 +49,7 @@ func TestShapiroBendsLight(t *testing.T) {
 // ln(R^2/2) at its limb (Eastman, Siverd and Gaudi 2010, section 2.4.1).
 func TestShapiroSizes(t *testing.T) {
 	at := func(star vector) float64 {
-		s := scene{earthKm: vector{auKm, 0, 0}, toStar: star}
+		s := observedFrom(vector{auKm, 0, 0}, star)
 		var terms LightTime
 		s.lightTime(&terms)
 		return terms.ShapiroS * 1e6
@@ -58,7 +66,8 @@ func TestCurvature(t *testing.T) {
 		distance := parsec * 206264.806 * auKm
 		k := vector{0.6, 0.64, 0.48}
 		earth := vector{0.3 * auKm, -0.9 * auKm, -0.1 * auKm}
-		s := scene{earthKm: earth, toStar: k, inverseAu: auKm / distance}
+		s := observedFrom(earth, k)
+		s.inverseAu = auKm / distance
 		var terms LightTime
 		s.lightTime(&terms)
 

@@ -45,9 +45,9 @@ func (c *Converter) Sky(e Epoch, site Site) (Sky, error) {
 	if err := c.look(&view, &now, ground); err != nil {
 		return Sky{}, err
 	}
-	axes := c.axes.at(now.tt.JD)
+	axes := c.days.at(now.tt.JD).axes
 	zenith := axes.transposedTimes(fromSpherical(earthRotationAngle(now.ut)+ground.longitudeRad, ground.latitudeRad))
-	sun := view.sunKm.minus(view.observerKm()).unit()
+	sun := view.toSunKm.unit()
 	return Sky{SunAltitudeDeg: altitude(sun, zenith), StarAltitudeDeg: altitude(view.sightline(), zenith)}, nil
 }
 

@@ -53,16 +53,18 @@ type groundedSite struct {
 	axisKm, equatorKm float64 // distances from the axis and from the equator's plane
 	longitudeRad      float64
 	latitudeRad       float64
+	potentialKm2S2    float64 // of the Earth, positive
 }
 
 func (s Site) grounded() groundedSite {
 	latitude := unit.AngleFromDeg(s.LatitudeDeg)
 	rhoSin, rhoCos := wgs84.ParallaxConstants(latitude, s.HeightM)
 	return groundedSite{
-		axisKm:       rhoCos * wgs84.Er,
-		equatorKm:    rhoSin * wgs84.Er,
-		longitudeRad: s.LongitudeDeg * radPerDeg,
-		latitudeRad:  latitude.Rad(),
+		axisKm:         rhoCos * wgs84.Er,
+		equatorKm:      rhoSin * wgs84.Er,
+		longitudeRad:   s.LongitudeDeg * radPerDeg,
+		latitudeRad:    latitude.Rad(),
+		potentialKm2S2: earthGMKm3S2 / (math.Hypot(rhoCos, rhoSin) * wgs84.Er),
 	}
 }
 

@@ -222,27 +222,19 @@ func (b *BarycentricVelocity) correction(v *PublishedVelocity, view *scene) floa
 }
 
 // observerShift is z of a source at rest about the barycentre in the direction
-// of sight, seen by the observer, turned round: 1 + z_B for z = 0. Without a
-// site the Earth's potential is that of its mean radius.
+// of sight, seen by the observer, turned round: 1 + z_B for z = 0.
 func (s *scene) observerShift(sight vector) float64 {
-	beta := s.earthKmS.plus(s.siteKmS).times(1 / lightKmS)
-	along := beta.dot(sight)
-	square := beta.dot(beta)
-	// gamma - 1 without cancellation
-	root := math.Sqrt(1 - square)
-	dilation := square / (root * (1 + root))
-
-	fromEarth := s.siteKm.length()
-	if fromEarth == 0 {
-		fromEarth = earthMeanRadiusKm
-	}
-	fromSun := s.observerKm().minus(s.sunKm).length()
-	potential := (sunGMKm3S2/fromSun + earthGMKm3S2/fromEarth) / (lightKmS * lightKmS)
+	velocity := s.earthKmS.plus(s.siteKmS)
+	along := velocity.dot(sight) / lightKmS
+	square := velocity.dot(velocity) / (lightKmS * lightKmS)
+	dilation := square * (0.5 + 0.375*square) // gamma - 1, the next term is 1e-25
+	potential := (sunGMKm3S2/s.sunDistanceKm + s.potentialKm2S2) / (lightKmS * lightKmS)
 	// (1 + dilation)(1 + along)/(1 - potential) - 1, again in small numbers
 	product := dilation + along + dilation*along
 	return (product + potential) / (1 - potential)
 }
 
+// earthMeanRadiusKm gives the potential at an unknown place of the surface.
 const earthMeanRadiusKm = 6371.0
 
 // removePerspective takes the perspective out once at most.
