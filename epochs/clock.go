@@ -147,6 +147,9 @@ func (c *Converter) fromLocal(n *instant, clock JD, s *Stamp, site *Site) error 
 	// Mean sidereal time at the start of the local mean day; TT for its
 	// argument may be a minute off, that is 1e-4 s.
 	start := midnight.AddSeconds(n.zoneS)
+	if s.DayFromNoon {
+		start = start.Add(0.5)
+	}
 	atStart := greenwichMeanSiderealTime(UT1{start}, TT{start})/(2*math.Pi) + site.LongitudeDeg/360
 	turns := math.Mod(sidereal-atStart, 1)
 	if turns < 0 {

@@ -266,6 +266,41 @@ func TestLocalSiderealTime(t *testing.T) {
 	}
 }
 
+// An astronomical day, from noon, with its hours by the sidereal clock: the
+// small hours belong to the date of the evening before. 1908 January 14 at
+// 9h31m sidereal time of Greenwich is 2 h 2.4 min after the midnight that began
+// January 15, where the sidereal time is 7h28m17.5s + 3m56.6s (pyerfa 2.0.0.1,
+// gmst82).
+func TestSiderealNight(t *testing.T) {
+	converter := converterFor(t, fixedStar, nil)
+	greenwich := Site{LatitudeDeg: 51.48}
+	for _, c := range []struct {
+		start     DayStart
+		wantJD    float64 // of the midnight
+		afterText string
+	}{
+		{DayStartMidnight, 2417954.5, "the same date"},
+		{DayStartNoon, 2417955.5, "the night of the date"},
+	} {
+		conv := Convention{Form: FormCivil, Scale: ScaleLocalSidereal, DayStart: c.start}
+		reader, err := conv.NewStampReader()
+		if err != nil {
+			t.Fatal(err)
+		}
+		stamp, err := reader.Read("1908 Jan 14 9h 31m")
+		if err != nil {
+			t.Fatal(err)
+		}
+		e, err := converter.Epoch(stamp, &greenwich)
+		if err != nil {
+			t.Fatal(err)
+		}
+		midnight := 7*3600 + 28*60 + 17.5414 + 236.555*(c.wantJD-2417954.5)
+		want := (9*3600 + 31*60 - midnight) * siderealToMean
+		near(t, c.afterText+", s after midnight", e.ObserverUT1.Sub(NewJD(c.wantJD, 0))*86400, want, 0.05)
+	}
+}
+
 // Every instant of a local day is found again from its sidereal time, the
 // last four minutes as the first ones.
 func TestLocalSiderealTimeThereAndBack(t *testing.T) {

@@ -25,6 +25,9 @@ type Stamp struct {
 	QuantumDays     float64 // one unit of the last printed digit
 	Exposure        ExposurePoint
 	ExposureLengthS float64 // seconds, 0 = unknown
+	// DayFromNoon: a local sidereal time belongs to the day that starts at noon
+	// of its date. JD counts sidereal days from midnight of the date either way.
+	DayFromNoon bool
 }
 
 // SigmaDays returns the standard uncertainty in days that comes from the
@@ -160,7 +163,9 @@ func (r *StampReader) fromCivil(text string, d civilDay) (Stamp, error) {
 		return Stamp{}, fmt.Errorf("%w: before 1925 a day of G.M.T. can start at noon or at midnight; state day_starts = \"noon\" or \"midnight\" (or scale \"gmat\" or \"ut\")", ErrAmbiguous)
 	}
 	jd := NewJD(midnight, d.fraction)
-	if c.Scale == ScaleGMAT || c.DayStart == DayStartNoon {
+	fromNoon := c.Scale == ScaleGMAT || c.DayStart == DayStartNoon
+	sidereal := c.Scale == ScaleLocalSidereal
+	if fromNoon && !sidereal {
 		jd = jd.Add(0.5)
 	}
 	if c.Scale == ScaleUTC && jd.Float() >= utcStart {
@@ -168,7 +173,9 @@ func (r *StampReader) fromCivil(text string, d civilDay) (Stamp, error) {
 	} else if d.leapSecond {
 		err = r.unreadable("seconds below 60; only UTC has 23:59:60")
 	}
-	return r.stamp(text, jd, d.quantumDays), err
+	s := r.stamp(text, jd, d.quantumDays)
+	s.DayFromNoon = fromNoon && sidereal
+	return s, err
 }
 
 // stretched makes a quasi Julian date of a UTC date: on a day of 86401 s the
