@@ -1,0 +1,119 @@
+package harmonize
+
+import (
+	"context"
+	"fmt"
+
+	"platemeld/epochs"
+	"platemeld/harmonize/plan"
+	"platemeld/harmonize/tables"
+)
+
+// Collection is every row of every source of a plan.
+type Collection struct {
+	Plan         *plan.Plan
+	Measurements []Measurement // all rows, by source and row
+	Problems     Problems
+	Remarks      []Remark
+}
+
+// Remark is something worth knowing about a source that stands in nobody's
+// way: a hidden row, a sheet's title lines, a date taken at the Earth's
+// centre for want of a site.
+type Remark struct {
+	Source string
+	Text   string
+}
+
+// Progress is told how far a stage has come; done and total count rows or
+// sources, as the stage says. It may be nil.
+type Progress func(stage string, done, total int)
+
+func (p Progress) report(stage string, done, total int) {
+	if p != nil {
+		p(stage, done, total)
+	}
+}
+
+// Collect reads every source of the plan, converts every date to BJD_TDB and
+// every velocity to the barycentre. What cannot be read is gathered in
+// Problems; the error is for a plan that allows no conversion at all, or a
+// cancelled context.
+func Collect(ctx context.Context, p *plan.Plan, progress Progress) (*Collection, error) {
+	star, err := p.Star.Direction()
+	if err != nil {
+		return nil, p.FaultAt("star", "%v", err)
+	}
+	converter, err := epochs.NewConverter(star, nil)
+	if err != nil {
+		return nil, p.FaultAt("star", "%v", err)
+	}
+	c := &Collection{Plan: p}
+	for i := range p.Sources {
+		if err := ctx.Err(); err != nil {
+			return nil, err
+		}
+		progress.report("reading", i, len(p.Sources))
+		c.readSource(ctx, i, converter)
+	}
+	progress.report("reading", len(p.Sources), len(p.Sources))
+	return c, ctx.Err()
+}
+
+// readSource reads and converts one source.
+func (c *Collection) readSource(ctx context.Context, index int, converter *epochs.Converter) {
+	source := &c.Plan.Sources[index]
+	table, err := tables.Read(c.Plan.File(source.File), source.TableOptions(c.Plan))
+	if err != nil {
+		c.addProblem(source, tables.Place{File: source.File, Sheet: source.Sheet}, fmt.Errorf("source %q: %w", source.Name, err))
+		return
+	}
+	for _, note := range table.Notes {
+		c.Remarks = append(c.Remarks, Remark{Source: source.Name, Text: note.String()})
+	}
+	reader, errs := newRowReader(c.Plan, index, table, converter)
+	for _, err := range errs {
+		c.addProblem(source, tables.Place{File: table.File, Sheet: table.Sheet}, err)
+	}
+	if len(errs) > 0 {
+		return
+	}
+	for row := range table.Rows {
+		if row%1024 == 0 && ctx.Err() != nil {
+			return
+		}
+		measurement, problems := reader.read(row)
+		for _, problem := range problems {
+			measurement.Fate = FateUnreadable
+			c.addProblem(source, measurement.Place, problem)
+		}
+		c.Measurements = append(c.Measurements, measurement)
+	}
+	c.remarkOn(index, len(table.Rows))
+}
+
+func (c *Collection) addProblem(source *plan.Source, place tables.Place, err error) {
+	c.Problems = append(c.Problems, Problem{Source: source.Name, Place: place, Err: err})
+}
+
+// remarkOn sums up what the conversions of a source's last rows flagged.
+func (c *Collection) remarkOn(index, rows int) {
+	source := &c.Plan.Sources[index]
+	flags := map[epochs.EpochFlag]int{}
+	for _, m := range c.Measurements[len(c.Measurements)-rows:] {
+		if m.Fate != FateMerged {
+			continue
+		}
+		for bit := epochs.EpochFlag(1); bit != 0 && bit <= m.Epoch.Flags; bit <<= 1 {
+			if m.Epoch.Flags&bit != 0 {
+				flags[bit]++
+			}
+		}
+	}
+	for bit := epochs.EpochFlag(1); len(flags) > 0; bit <<= 1 {
+		if n := flags[bit]; n > 0 {
+			c.Remarks = append(c.Remarks, Remark{Source: source.Name, Text: fmt.Sprintf("%d rows: %s", n, bit)})
+			delete(flags, bit)
+		}
+	}
+}

@@ -1,0 +1,45 @@
+package plan
+
+import (
+	"errors"
+	"fmt"
+	"sort"
+	"strings"
+)
+
+// ErrPlan is what every error about a plan's content unwraps to.
+var ErrPlan = errors.New("plan: not usable")
+
+// Fault is one thing wrong with a plan.
+type Fault struct {
+	Line int    // counted from 1
+	Key  string // such as "source.time.form"
+	Text string // what is wrong, and what would be accepted
+}
+
+// Faults are all things found wrong with one plan, in the order of its lines.
+type Faults struct {
+	Path string
+	List []Fault
+}
+
+// Error lists every fault on a line of its own.
+func (f *Faults) Error() string {
+	lines := make([]string, len(f.List))
+	for i, fault := range f.List {
+		lines[i] = fmt.Sprintf("%s, line %d, %s: %s", f.Path, fault.Line, fault.Key, fault.Text)
+	}
+	return strings.Join(lines, "\n")
+}
+
+// Unwrap returns ErrPlan.
+func (f *Faults) Unwrap() error { return ErrPlan }
+
+// orNil returns f as an error, or nil when nothing was found.
+func (f *Faults) orNil() error {
+	if len(f.List) == 0 {
+		return nil
+	}
+	sort.SliceStable(f.List, func(i, j int) bool { return f.List[i].Line < f.List[j].Line })
+	return f
+}
