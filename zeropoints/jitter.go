@@ -28,29 +28,34 @@ func (j *jitterRows) score(variance float64, loss Loss, normal normalMoments) (s
 // smallestVariance stands for zero where a variance divides: (1 mm/s)².
 const smallestVariance = 1e-12
 
-// solve returns the variance at which the score is z standard deviations
-// above zero: 0 when it is below that everywhere, infinite when it is above,
-// as for an upper end with one or two rows.
+// solve returns the largest variance at which the score is z standard
+// deviations above zero: 0 when it is below that everywhere, infinite when it
+// is above, as for an upper end with one or two rows. The largest, since the
+// score of a loss that gives far rows up has a second root where all rows are
+// given up.
 func (j *jitterRows) solve(z float64, loss Loss, normal normalMoments) float64 {
 	excess := func(variance float64) float64 {
 		sum, deviation := j.score(variance, loss, normal)
 		return sum - z*deviation
 	}
-	if !(excess(0) > 0) {
-		return 0
-	}
-	low, high := 0.0, smallestVariance
+	high := smallestVariance
 	for _, r := range j.residual {
 		high = math.Max(high, r*r)
 	}
-	for range 80 {
-		if excess(high) <= 0 {
-			break
-		}
-		low, high = high, high*4
-	}
-	if excess(high) > 0 {
+	const widest = 1e4 // jitters beyond 100 times the largest residual are no limit
+	if high *= widest; excess(high) > 0 {
 		return math.Inf(1)
+	}
+	low := high
+	for excess(low) <= 0 {
+		if high = low; low < smallestVariance {
+			if excess(0) > 0 {
+				low = 0
+				break
+			}
+			return 0
+		}
+		low /= 1.5
 	}
 	for range 100 {
 		middle := (low + high) / 2
