@@ -97,7 +97,7 @@ func duplicateSection(p *plan.Plan, duplicates []harmonize.DuplicateCount) strin
 func ZeroPointTable(s *harmonize.Series) string {
 	var b strings.Builder
 	b.WriteString("ZERO POINTS in km/s, to be subtracted (already done in the merged series)\n")
-	fmt.Fprintf(&b, "%-28s %5s %11s %9s %8s  %s\n", "instrument", "rows", "zero point", "error", "jitter", "68% interval")
+	fmt.Fprintf(&b, "%-24s %5s %11s %9s %8s  %s\n", "instrument", "rows", "zero point", "error", "jitter", "68% interval")
 	for i, z := range s.ZeroPoints {
 		fit := s.Solution.ZeroPoints[i]
 		value, sigma := fmt.Sprintf("%+11.4f", fit.Kms), fmt.Sprintf("%9.4f", fit.SigmaKms)
@@ -108,14 +108,30 @@ func ZeroPointTable(s *harmonize.Series) string {
 		case gauge.Kind == zeropoints.GaugeReference && fit.Kms == 0 && fit.SigmaKms == 0:
 			sigma = "reference"
 		}
-		jitter := fmt.Sprintf("%8.4f  %.4f to %.4f", fit.JitterKms, fit.JitterLowKms, fit.JitterHighKms)
-		if fit.JitterIsLimit {
-			jitter = fmt.Sprintf("%8.4f  below %.4f", fit.JitterKms, fit.JitterHighKms)
-		}
-		fmt.Fprintf(&b, "%s %5d %s %s %s\n", pad(z.Name, 28), fit.Rows, value, sigma, jitter)
+		jitter := fmt.Sprintf("%8s  %s", short(fit.JitterKms), jitterInterval(fit))
+		fmt.Fprintf(&b, "%s %5d %s %s %s\n", pad(z.Name, 24), fit.Rows, value, sigma, jitter)
 	}
 	b.WriteString("\n")
 	return b.String()
+}
+
+// jitterInterval returns a jitter's interval in words.
+func jitterInterval(z zeropoints.ZeroPoint) string {
+	switch {
+	case math.IsInf(z.JitterHighKms, 0):
+		return "above " + short(z.JitterLowKms)
+	case z.JitterIsLimit:
+		return "below " + short(z.JitterHighKms)
+	}
+	return short(z.JitterLowKms) + " to " + short(z.JitterHighKms)
+}
+
+// short writes a velocity to 0.1 m/s, or to 10 m/s from 10 km/s on.
+func short(kms float64) string {
+	if kms >= 10 {
+		return fmt.Sprintf("%.2f", kms)
+	}
+	return fmt.Sprintf("%.4f", kms)
 }
 
 func signalSection(s *harmonize.Series) string {

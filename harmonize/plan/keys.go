@@ -108,9 +108,9 @@ func walkTables(visit func(path []string, field reflect.StructField, t reflect.T
 }
 
 // nearest returns the name closest to word, or "" when none is close: at
-// most one letter in three may differ.
+// most half of the letters, and no more than three, may differ.
 func nearest(word string, names []string) string {
-	best, bestDistance := "", 1+max(1, len(word)/3)
+	best, bestDistance := "", 1+min(3, max(1, len(word)/2))
 	for _, name := range names {
 		if d := levenshtein.ComputeDistance(strings.ToLower(word), strings.ToLower(name)); d < bestDistance {
 			best, bestDistance = name, d

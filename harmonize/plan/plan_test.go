@@ -103,33 +103,33 @@ func TestParse(t *testing.T) {
 func TestFaults(t *testing.T) {
 	tests := []struct {
 		name, old, new string
-		line           int
+		at             string   // text of the line that is to be named
 		says           []string // parts of the message
 	}{
-		{"unknown key", "pm_ra =", "pm_rra =", 6, []string{"star.pm_rra", `did you mean "pm_ra"`}},
-		{"key of another table", "pm_ra = -312.4", "longitude = 3", 6, []string{"star.longitude", "[site] has one"}},
-		{"unknown table", "[fit]", "[fitt]", 49, []string{"fitt", `"fit"`}},
-		{"wrong type", `height = 1200`, `height = "high"`, 12, []string{"number"}},
-		{"not TOML", "[star]", "[star", 2, []string{"plan.toml, line 2"}},
-		{"no position", "ra = \"14 22 31.80\"\ndec = \"-00 04 55.1\"\n", "", 2, []string{"star", "has no position"}},
-		{"unreadable position", "14 22 31.80", "fourteen hours", 2, []string{"fourteen hours"}},
-		{"no longitude", "longitude = 23.5\n", "", 8, []string{"longitude"}},
-		{"latitude beyond the pole", "latitude = -31.0", "latitude = -131.0", 8, []string{"latitude"}},
-		{"unknown site", `site = "Hill"`, `site = "Hil"`, 15, []string{`"Hil"`, `"Hill"`}},
-		{"unknown instrument", `instrument = "Dorn"`, `instrument = "Dron"`, 39, []string{`"Dron"`, "Dorn", "did you mean"}},
-		{"no instrument", "instrument = \"Dorn\"\n", "", 35, []string{"names no instrument"}},
-		{"two columns missing", `columns = {time = "t", velocity = "v"}`, `columns = {remark = "r"}`, 40, []string{"velocity column", "date column"}},
-		{"unknown form", `form = "mjd"`, `form = "mdj"`, 41, []string{"mdj", "mjd"}},
-		{"unknown scale", `scale = "utc"`, `scale = "gtm"`, 41, []string{"gtm", "gmt"}},
-		{"no frame", `frame = "barycentric", `, "", 42, []string{"velocity.frame", "heliocentric"}},
-		{"unknown unit", `unit = "m/s"`, `unit = "mph"`, 42, []string{"mph", "km/s"}},
-		{"kind without column", "error = \"pe\"\n", "", 34, []string{"probable", "columns.error"}},
-		{"eras out of order", `until = "1931-05-02"}, {name = "new"}`, `until = "1931-05-02"}, {name = "x", until = "1930-01-01"}, {name = "new"}`, 16, []string{"order of time"}},
-		{"duplicate source name", `name = "later"`, `name = "plates"`, 36, []string{"used twice"}},
-		{"reference named nowhere", "Corvane/new", "Corvane", 45, []string{"Corvane/old", "Corvane/new"}},
-		{"period and range", "period = 5000.0", "period = 5000.0\nperiod_range = [1.0, 2.0]", 45, []string{"keep one"}},
-		{"precedence of no source", "[fit]", "[duplicates]\nprecedence = [\"platse\"]\n[fit]", 44, []string{"platse", "plates, later"}},
-		{"published without zero points", "reference_instrument = \"Corvane/new\"", "gauge = \"published\"", 45, []string{"zero_point"}},
+		{"unknown key", "pm_ra =", "pm_rra =", "pm_rra", []string{"star.pm_rra", `did you mean "pm_ra"`}},
+		{"key of another table", "pm_ra = -312.4", "longitude = 3", "longitude = 3", []string{"star.longitude", "[site] has one"}},
+		{"unknown table", "[fit]", "[fitt]", "[fitt]", []string{"fitt", `"fit"`}},
+		{"wrong type", `height = 1200`, `height = "high"`, "height", []string{"number"}},
+		{"not TOML", "[star]", "[star", "[star", []string{"plan.toml, line 2"}},
+		{"no position", "ra = \"14 22 31.80\"\ndec = \"-00 04 55.1\"\n", "", "[star]", []string{"star", "has no position"}},
+		{"unreadable position", "14 22 31.80", "fourteen hours", "[star]", []string{"fourteen hours"}},
+		{"no longitude", "longitude = 23.5\n", "", "[[site]]", []string{"longitude"}},
+		{"latitude beyond the pole", "latitude = -31.0", "latitude = -131.0", "[[site]]", []string{"latitude"}},
+		{"unknown site", `site = "Hill"`, `site = "Hil"`, `site = "Hil"`, []string{`"Hil"`, `"Hill"`}},
+		{"unknown instrument", `instrument = "Dorn"`, `instrument = "Dron"`, `instrument = "Dron"`, []string{`"Dron"`, "Dorn", "did you mean"}},
+		{"no instrument", "instrument = \"Dorn\"\n", "", "[[source]]\nname = \"later", []string{"names no instrument"}},
+		{"two columns missing", `columns = {time = "t", velocity = "v"}`, `columns = {remark = "r"}`, "columns = {remark", []string{"velocity column", "date column"}},
+		{"unknown form", `form = "mjd"`, `form = "mdj"`, "mdj", []string{"mdj", "mjd"}},
+		{"unknown scale", `scale = "utc"`, `scale = "gtm"`, "gtm", []string{"gtm", "gmt"}},
+		{"no frame", `frame = "barycentric", `, "", `velocity = {unit`, []string{"velocity.frame", "heliocentric"}},
+		{"unknown unit", `unit = "m/s"`, `unit = "mph"`, "mph", []string{"mph", "km/s"}},
+		{"kind without column", "error = \"pe\"\n", "", `kind = "probable"`, []string{"probable", "columns.error"}},
+		{"eras out of order", `until = "1931-05-02"}, {name = "new"}`, `until = "1931-05-02"}, {name = "x", until = "1930-01-01"}, {name = "new"}`, "1930-01-01", []string{"order of time"}},
+		{"duplicate source name", `name = "later"`, `name = "plates"`, "name = \"plates\"\nfile = \"later", []string{"used twice"}},
+		{"reference named nowhere", "Corvane/new", "Corvane", "reference_instrument", []string{"Corvane/old", "Corvane/new"}},
+		{"period and range", "period = 5000.0", "period = 5000.0\nperiod_range = [1.0, 2.0]", "period_range", []string{"keep one"}},
+		{"precedence of no source", "[fit]", "[duplicates]\nprecedence = [\"platse\"]\n[fit]", "precedence", []string{"platse", "plates, later"}},
+		{"published without zero points", "reference_instrument = \"Corvane/new\"", "gauge = \"published\"", "gauge", []string{"zero_point"}},
 	}
 	for _, test := range tests {
 		t.Run(test.name, func(t *testing.T) {
@@ -137,6 +137,11 @@ func TestFaults(t *testing.T) {
 			if text == sound {
 				t.Fatalf("the plan holds no %q", test.old)
 			}
+			at := strings.Index(text, test.at)
+			if at < 0 {
+				t.Fatalf("the damaged plan holds no %q", test.at)
+			}
+			line := 1 + strings.Count(text[:at], "\n")
 			_, err := plan.Parse("plan.toml", []byte(text))
 			if !errors.Is(err, plan.ErrPlan) {
 				t.Fatalf("got error %v, want one that is ErrPlan", err)
@@ -147,10 +152,10 @@ func TestFaults(t *testing.T) {
 			}
 			found := false
 			for _, fault := range faults.List {
-				found = found || fault.Line == test.line
+				found = found || fault.Line == line
 			}
 			if !found {
-				t.Errorf("no fault on line %d: %v", test.line, err)
+				t.Errorf("no fault on line %d: %v", line, err)
 			}
 			for _, part := range test.says {
 				if !strings.Contains(err.Error(), part) {
