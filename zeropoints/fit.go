@@ -149,11 +149,11 @@ func resized(values []float64, n int) []float64 {
 // width is the number of columns, that of the period among them.
 func (s *state) width() int { return len(s.rows.columns) / len(s.velocity) }
 
-// The limits of the iteration: settled when no level moves by more than a
-// thousandth of its standard error.
+// The limits of the iteration: settled when no level moves by more than this
+// share of its standard error, and no variance by more than this share.
 const (
 	maxIterations = 500
-	settledAt     = 1e-4
+	settledAt     = 1e-8
 )
 
 // run repeats weighted least squares and jitter steps until they agree, first

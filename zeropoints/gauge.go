@@ -49,6 +49,10 @@ func (s *state) scoreMoments(r rows, fitted []float64) (slope, square []float64)
 	normal := s.problem.Loss.atNormal()
 	slope, square = make([]float64, len(s.level)), make([]float64, len(s.level))
 	for k, list := range s.members {
+		if s.problem.Loss == LossGaussian { // the model's own covariance
+			slope[k], square[k] = 1, 1
+			continue
+		}
 		sumSlope, sumSquare := prior*normal.psiSlope, prior*normal.psiSquare
 		for _, i := range list {
 			u := s.residual[i] * math.Sqrt(r.weight[i])

@@ -39,7 +39,7 @@ func ParseLoss(word string) (Loss, error) {
 }
 
 // studentFreedom is the number of degrees of freedom of the Student-t loss:
-// 94.2 per cent efficient at the normal distribution.
+// 92.6 per cent efficient at the normal distribution.
 const studentFreedom = 4.0
 
 // huberTuning makes Huber's estimate 95 per cent efficient at the normal

@@ -4,6 +4,7 @@ import (
 	"errors"
 	"fmt"
 	"math"
+	"slices"
 	"strings"
 )
 
@@ -87,6 +88,9 @@ func (p *Problem) validate() error {
 		return fault("periods from %v to %v d; the shorter comes first", s.ScanMinDays, s.ScanMaxDays)
 	case p.Gauge.Kind == GaugeReference && (p.Gauge.Reference < 0 || p.Gauge.Reference >= len(p.Instruments)):
 		return fault("the reference instrument has the index %d of %d", p.Gauge.Reference, len(p.Instruments))
+	}
+	if p.Gauge.Kind == GaugePublished && !slices.ContainsFunc(p.Instruments, func(i Instrument) bool { return i.HasPublished }) {
+		return fault("no instrument has a published zero point")
 	}
 	return p.validateRows(fault)
 }
