@@ -52,7 +52,7 @@ func (c *Converter) instantOf(n *instant, clock JD, s *Stamp, site *Site) error 
 func (c *Converter) fromUTC(n *instant, utc UTC) error {
 	if utc.Float() < utcStart {
 		n.flags |= FlagUTCBefore1960
-		return c.throughDeltaT(n, UT1{utc.JD})
+		return c.throughDeltaT(n, UT1(utc))
 	}
 	tai, err := utc.TAI()
 	if err != nil {
@@ -101,7 +101,7 @@ func (c *Converter) fromUT(n *instant, ut UT1, scale Scale) error {
 	n.deltaTS = ttMinusTAIS + taiMinusUTC
 	dut1 := 0.0
 	if c.options.UT1MinusUTC != nil {
-		dut1 = c.options.UT1MinusUTC(UTC{ut.JD})
+		dut1 = c.options.UT1MinusUTC(UTC(ut))
 	}
 	switch {
 	case scale == ScaleUT1:

@@ -23,7 +23,6 @@ type epochsOptions struct {
 	longitude, latitude, height      float64
 	time                             plan.Time
 	offset                           string
-	form                             string // of the output: table, csv or json
 	json, csv, itemise, uncertainty  bool
 }
 
