@@ -15,14 +15,16 @@ type Collection struct {
 	Measurements []Measurement // all rows, by source and row
 	Problems     Problems
 	Remarks      []Remark
+	Nights       []NightVerdict // of the sources whose instruments have a site
 }
 
 // Remark is something worth knowing about a source that stands in nobody's
 // way: a hidden row, a sheet's title lines, a date taken at the Earth's
 // centre for want of a site.
 type Remark struct {
-	Source string
+	Source string // "" = the whole merge
 	Text   string
+	Rows   int // how many rows it is about, 0 = not counted
 }
 
 // Progress is told how far a stage has come; done and total count rows or
@@ -71,6 +73,9 @@ func (c *Collection) readSource(ctx context.Context, index int, converter *epoch
 	for _, note := range table.Notes {
 		c.Remarks = append(c.Remarks, Remark{Source: source.Name, Text: note.String()})
 	}
+	for _, assumed := range source.Assumed() {
+		c.Remarks = append(c.Remarks, Remark{Source: source.Name, Text: "assumed " + assumed})
+	}
 	reader, errs := newRowReader(c.Plan, index, table, converter)
 	for _, err := range errs {
 		c.addProblem(source, tables.Place{File: table.File, Sheet: table.Sheet}, err)
@@ -90,6 +95,7 @@ func (c *Collection) readSource(ctx context.Context, index int, converter *epoch
 		c.Measurements = append(c.Measurements, measurement)
 	}
 	c.remarkOn(index, len(table.Rows))
+	c.testNights(index, len(table.Rows), reader.convention, converter, reader.sites)
 }
 
 func (c *Collection) addProblem(source *plan.Source, place tables.Place, err error) {
@@ -112,7 +118,7 @@ func (c *Collection) remarkOn(index, rows int) {
 	}
 	for bit := epochs.EpochFlag(1); len(flags) > 0; bit <<= 1 {
 		if n := flags[bit]; n > 0 {
-			c.Remarks = append(c.Remarks, Remark{Source: source.Name, Text: fmt.Sprintf("%d rows: %s", n, bit)})
+			c.Remarks = append(c.Remarks, Remark{Source: source.Name, Text: bit.String(), Rows: n})
 			delete(flags, bit)
 		}
 	}

@@ -25,6 +25,8 @@ type Measurement struct {
 	SigmaKms     float64                    // standard error; 0 = the row has none
 	ErrorFrom    ErrorOrigin
 
+	NightFault string // what the night test says against the epoch, "" = nothing
+
 	Fate        Fate
 	Reason      string // why the row was set aside
 	DuplicateOf int    // index of the measurement used instead; -1 = none

@@ -18,21 +18,22 @@ const probableErrorFactor = 0.6744897501960817
 
 // rowReader reads the rows of one source in their order.
 type rowReader struct {
-	plan      *plan.Plan
-	index     int // of the source
-	source    *plan.Source
-	table     *tables.Table
-	at        columnPlaces
-	stamps    *epochs.StampReader
-	converter *epochs.Converter
-	style     printed.Style
-	velocity  epochs.PublishedVelocity // frame and convention; the number is filled in row by row
-	toKms     float64                  // of the velocity column
-	errorKms  float64                  // of the error column
-	kind      string                   // of error
-	aside     []string                 // reason by row of the table, "" = none
-	sites     []*epochs.Site           // by instrument of the plan, nil = none
-	zeroAt    []int                    // first zero point of each instrument
+	plan       *plan.Plan
+	index      int // of the source
+	source     *plan.Source
+	table      *tables.Table
+	at         columnPlaces
+	convention epochs.Convention
+	stamps     *epochs.StampReader
+	converter  *epochs.Converter
+	style      printed.Style
+	velocity   epochs.PublishedVelocity // frame and convention; the number is filled in row by row
+	toKms      float64                  // of the velocity column
+	errorKms   float64                  // of the error column
+	kind       string                   // of error
+	aside      []string                 // reason by row of the table, "" = none
+	sites      []*epochs.Site           // by instrument of the plan, nil = none
+	zeroAt     []int                    // first zero point of each instrument
 }
 
 // columnPlaces holds the table's column for each meaning, -1 = none.
@@ -54,13 +55,14 @@ func newRowReader(p *plan.Plan, index int, table *tables.Table, converter *epoch
 		}
 	}
 	note(r.findColumns())
-	convention, err := source.Convention()
-	if err == nil {
-		r.stamps, err = convention.NewStampReader()
+	var err error
+	if r.convention, err = source.Convention(); err == nil {
+		r.stamps, err = r.convention.NewStampReader()
 	}
 	note(err)
 	r.velocity, err = source.Published(0)
 	note(err)
+	r.velocity.RemovePerspective = p.Star.RemovePerspective
 	if len(errs) > 0 {
 		return nil, errs // units and rules need the columns
 	}
@@ -239,13 +241,13 @@ const fastestKms = 1000
 // convert takes the measurement to the barycentre.
 func (r *rowReader) convert(m *Measurement) (err error) {
 	site := r.sites[m.Instrument]
-	if m.Epoch, err = r.converter.Epoch(m.Stamp, site); err != nil {
-		return err
-	}
 	published := r.velocity
 	published.Kms = m.PublishedKms
-	if m.Velocity, err = r.converter.BarycentricVelocity(published, m.Epoch, site); err != nil {
+	if m.Epoch, m.Velocity, err = r.converter.Convert(m.Stamp, published, site); err != nil {
 		return err
+	}
+	if r.source.Velocity.KeepHeliocentric {
+		m.Velocity.Kms, m.Velocity.Terms.SunMs, m.Velocity.Terms.CrossMs = m.PublishedKms, 0, 0
 	}
 	m.ZeroPoint = r.zeroAt[m.Instrument] + r.plan.EraAt(m.Instrument, m.Epoch.BJD.Float())
 	return nil

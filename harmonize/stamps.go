@@ -77,6 +77,21 @@ func (s *Stamps) Convert(text string) (epochs.Epoch, error) {
 	return s.converter.Epoch(stamp, s.site)
 }
 
+// ConvertWithVelocity is Convert with what it takes to refer a velocity of
+// zero, observed at the site or else at the Earth's centre, to the barycentre:
+// the velocity correction.
+func (s *Stamps) ConvertWithVelocity(text string) (epochs.Epoch, epochs.BarycentricVelocity, error) {
+	stamp, err := s.reader.Read(strings.TrimSpace(text))
+	if err != nil {
+		return epochs.Epoch{}, epochs.BarycentricVelocity{}, err
+	}
+	frame := epochs.FrameTopocentric
+	if s.site == nil {
+		frame = epochs.FrameGeocentric
+	}
+	return s.converter.Convert(stamp, epochs.PublishedVelocity{Frame: frame}, s.site)
+}
+
 // siteOf returns the site of an instrument of the plan, or nil.
 func siteOf(p *plan.Plan, instrument string) (*epochs.Site, error) {
 	if instrument == "" {

@@ -89,8 +89,16 @@ func runEpochs(command *cobra.Command, arguments []string, o epochsOptions) erro
 	out := bufio.NewWriterSize(command.OutOrStdout(), 1<<16)
 	write := o.writer(out)
 	failed := 0
+	withVelocity := o.itemise || o.json
 	convert := func(number int, text string) error {
-		epoch, err := stamps.Convert(text)
+		var epoch epochs.Epoch
+		var velocity epochs.BarycentricVelocity
+		var err error
+		if withVelocity {
+			epoch, velocity, err = stamps.ConvertWithVelocity(text)
+		} else {
+			epoch, err = stamps.Convert(text)
+		}
 		if err != nil {
 			failed++
 			if err := out.Flush(); err != nil {
@@ -99,7 +107,7 @@ func runEpochs(command *cobra.Command, arguments []string, o epochsOptions) erro
 			fmt.Fprintf(command.ErrOrStderr(), "stamp %d, reads %q: %v\n", number, text, err)
 			return nil
 		}
-		return write(text, epoch)
+		return write(text, epoch, velocity)
 	}
 	if err := eachStamp(command, arguments, convert); err != nil {
 		return err

@@ -25,7 +25,7 @@ const (
 
 // errFindings is returned by a command that did its work and was asked to be
 // strict about findings.
-var errFindings = errors.New("there are findings that need a human, listed under TO LOOK AT")
+var errFindings = errors.New("there are findings that need a human, listed under TO LOOK AT or NIGHT TEST")
 
 func main() {
 	ctx, stop := signal.NotifyContext(context.Background(), os.Interrupt, syscall.SIGTERM)

@@ -65,9 +65,14 @@ func runMerge(command *cobra.Command, o mergeOptions) error {
 	return strictly(o.strict, series)
 }
 
-// strictly returns errFindings when findings matter and there are some.
+// strictly returns errFindings when findings matter and there are some: those
+// of the fit, and sources whose dates fit the nights better in another reading.
 func strictly(strict bool, series *harmonize.Series) error {
-	if strict && len(series.Solution.Findings) > 0 {
+	found := len(series.Solution.Findings) > 0
+	for _, verdict := range series.Nights {
+		found = found || verdict.Doubtful
+	}
+	if strict && found {
 		return errFindings
 	}
 	return nil

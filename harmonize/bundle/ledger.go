@@ -17,7 +17,8 @@ func ledger(s *harmonize.Series) []byte {
 		"instrument", "stamp_jd", "stamp_scale", "stamp_place", "stamp_resolution_d",
 		"delta_t_s", "observer_tt_jd", "roemer_sun_s", "roemer_barycentre_s", "shapiro_s", "curvature_s",
 		"tdb_minus_tt_s", "bjd_tdb", "bjd_tdb_error_d",
-		"published_kms", "published_frame", "change_to_barycentre_ms", "barycentric_kms",
+		"night_test", "published_kms", "published_frame", "change_to_barycentre_ms", "sun_along_sight_ms", "relativity_ms",
+		"barycentric_kms",
 		"error_from", "error_kms", "zero_point_kms", "jitter_kms", "robust_weight", "merged_kms")
 	inSeries := make(map[int]*harmonize.MergedRow, len(s.Rows))
 	for i := range s.Rows {
@@ -41,7 +42,7 @@ func origin(s *harmonize.Series, m *harmonize.Measurement) []string {
 
 // conversion is the way of a row to the barycentre.
 func conversion(s *harmonize.Series, m *harmonize.Measurement) []string {
-	const steps = 20
+	const steps = 23
 	if m.ZeroPoint < 0 {
 		return make([]string, steps)
 	}
@@ -53,7 +54,8 @@ func conversion(s *harmonize.Series, m *harmonize.Measurement) []string {
 		orEmpty(terms.DeltaTS, seconds), m.Epoch.ObserverTT.Text(dateDecimals), seconds(terms.RoemerSunS), seconds(terms.RoemerBarycentreS),
 		seconds(terms.ShapiroS), seconds(terms.CurvatureS), seconds(terms.TDBMinusTTS),
 		m.Epoch.BJD.Text(dateDecimals), fixed(m.Epoch.SigmaDays, dateDecimals),
-		kms(m.PublishedKms), source.Velocity.Frame, fixed((m.Velocity.Kms-m.PublishedKms)*1000, 3), kms(m.Velocity.Kms),
+		m.NightFault, kms(m.PublishedKms), source.Velocity.Frame, fixed((m.Velocity.Kms-m.PublishedKms)*1000, 3),
+		fixed(m.Velocity.SunAlongSightMs, 3), fixed(m.Velocity.Terms.RelativityMs, 3), kms(m.Velocity.Kms),
 		m.ErrorFrom.String(), orEmpty(m.SigmaKms, kms)}
 }
 

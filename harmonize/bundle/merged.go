@@ -43,6 +43,9 @@ func flags(row *harmonize.MergedRow, m *harmonize.Measurement) string {
 	if row.RobustWeight < 0.5 {
 		list = append(list, "outlier")
 	}
+	if m.NightFault != "" {
+		list = append(list, "failed the night test")
+	}
 	if text := m.Epoch.Flags.String(); text != "" {
 		list = append(list, text)
 	}

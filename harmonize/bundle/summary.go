@@ -66,6 +66,7 @@ func Reading(c *harmonize.Collection, duplicates []harmonize.DuplicateCount) str
 		b.WriteString("\n")
 	}
 	b.WriteString(duplicateSection(c.Plan, duplicates))
+	b.WriteString(nightSection(c))
 	b.WriteString(remarkSection(c))
 	return b.String()
 }
@@ -175,18 +176,54 @@ func Findings(s *harmonize.Series) string {
 	return b.String()
 }
 
+// remarkSection lists the remarks, those of one text on several sources
+// together.
 func remarkSection(c *harmonize.Collection) string {
 	if len(c.Remarks) == 0 {
 		return ""
 	}
+	var texts []string
+	about := map[string][]string{}
+	for _, remark := range c.Remarks {
+		if _, known := about[remark.Text]; !known {
+			texts = append(texts, remark.Text)
+			about[remark.Text] = nil
+		}
+		switch {
+		case remark.Rows > 0:
+			about[remark.Text] = append(about[remark.Text], fmt.Sprintf("%s (%d rows)", remark.Source, remark.Rows))
+		case remark.Source != "":
+			about[remark.Text] = append(about[remark.Text], remark.Source)
+		}
+	}
 	var b strings.Builder
 	b.WriteString("REMARKS\n")
-	for _, remark := range c.Remarks {
-		text := remark.Text
-		if remark.Source != "" {
-			text = remark.Source + ": " + text
+	for _, text := range texts {
+		if sources := about[text]; len(sources) > 0 {
+			text += ": " + strings.Join(sources, ", ")
 		}
 		writeItem(&b, "- ", text)
+	}
+	b.WriteString("\n")
+	return b.String()
+}
+
+// nightSection says how the night test went.
+func nightSection(c *harmonize.Collection) string {
+	if len(c.Nights) == 0 {
+		return ""
+	}
+	var b strings.Builder
+	b.WriteString("NIGHT TEST: Sun down and star up at the site\n")
+	tested, passed := 0, 0
+	for _, verdict := range c.Nights {
+		tested, passed = tested+verdict.Tested, passed+verdict.Tested-verdict.Failed
+	}
+	writeItem(&b, "- ", fmt.Sprintf("%d of %d rows pass", passed, tested))
+	for _, verdict := range c.Nights {
+		if verdict.Failed > 0 {
+			writeItem(&b, "- ", verdict.Source+": "+verdict.Text)
+		}
 	}
 	b.WriteString("\n")
 	return b.String()

@@ -118,13 +118,21 @@ func orElse(word, otherwise string) string {
 // Published returns a velocity of the source, in km/s, with the source's
 // frame and convention.
 func (s *Source) Published(kms float64) (epochs.PublishedVelocity, error) {
-	v := epochs.PublishedVelocity{Kms: kms}
+	v := epochs.PublishedVelocity{Kms: kms, PerspectiveRemoved: s.Velocity.PerspectiveRemoved}
 	var err error
 	if v.Frame, err = epochs.ParseFrame(s.Velocity.Frame); err != nil {
 		return v, err
 	}
-	if v.Frame == epochs.FrameLSR {
-		return v, fmt.Errorf("frame \"lsr\" needs the solar motion that the table's author used, which a plan cannot state yet; give the velocities in another frame")
+	motion := s.Velocity.SolarMotion
+	switch {
+	case (v.Frame == epochs.FrameLSR) != (motion != nil):
+		return v, fmt.Errorf("frame \"lsr\", and no other, needs solar_motion, the motion of the Sun that the table's author used")
+	case motion != nil && !(motion.Speed >= 0 && motion.Speed <= 1000 && motion.RA >= 0 && motion.RA <= 360 && math.Abs(motion.Dec) <= 90):
+		return v, fmt.Errorf("solar_motion reads %v km/s towards %v, %v; 0 to 1000 km/s and degrees are accepted", motion.Speed, motion.RA, motion.Dec)
+	case motion != nil:
+		v.LSR = &epochs.SolarMotion{SpeedKms: motion.Speed, ApexRADeg: motion.RA, ApexDecDeg: motion.Dec}
+	case s.Velocity.KeepHeliocentric && v.Frame != epochs.FrameHeliocentric:
+		return v, fmt.Errorf("keep_heliocentric goes with frame \"heliocentric\", not %q", s.Velocity.Frame)
 	}
 	v.Convention, err = epochs.ParseVelocityConvention(orElse(s.Velocity.Convention, "optical"))
 	return v, err

@@ -27,7 +27,7 @@ func keyType(table []string) reflect.Type {
 // tableType returns the struct behind a field that is a table or an array of
 // tables, or nil for a plain value.
 func tableType(t reflect.Type) reflect.Type {
-	if t.Kind() == reflect.Slice {
+	if t.Kind() == reflect.Slice || t.Kind() == reflect.Pointer {
 		t = t.Elem()
 	}
 	if t.Kind() == reflect.Struct {

@@ -13,6 +13,7 @@ type Plan struct {
 	Sources     []Source     `toml:"source" doc:"One block for each published table." need:"required"`
 	Duplicates  Duplicates   `toml:"duplicates" doc:"How exposures published more than once are recognised."`
 	Fit         Fit          `toml:"fit" doc:"How the zero points are estimated."`
+	NightTest   NightTest    `toml:"night_test" doc:"When the star could be observed: a date that falls in daylight at its site was misread. Rows that fail are flagged, never changed."`
 	Bundle      Bundle       `toml:"bundle" doc:"Where the results go."`
 
 	// Path is the file that was read, and Text its content to the byte.
@@ -24,16 +25,17 @@ type Plan struct {
 
 // Star is the star's place in the sky and its motion.
 type Star struct {
-	Name             string   `toml:"name" doc:"The star's name." need:"required"`
-	Aliases          []string `toml:"aliases" doc:"Other names under which a table's star column may list it."`
-	RA               any      `toml:"ra" doc:"Right ascension: \"14 22 31.80\" in hours, minutes, seconds, or a number of degrees." need:"required"`
-	Dec              any      `toml:"dec" doc:"Declination: \"-12 04 55.1\", or a number of degrees." need:"required"`
-	Frame            string   `toml:"frame" doc:"Frame of the position and proper motion: \"ICRS\", \"B1950\" or \"B1900\"." default:"ICRS"`
-	PositionEpoch    float64  `toml:"position_epoch" doc:"Epoch of the position; of an ICRS position as a Julian year, otherwise a Besselian year." unit:"year" default:"2000 for ICRS, else that of the frame"`
-	PMRA             float64  `toml:"pm_ra" doc:"Proper motion in right ascension, with the factor cos(declination)." unit:"mas/yr" default:"0"`
-	PMDec            float64  `toml:"pm_dec" doc:"Proper motion in declination." unit:"mas/yr" default:"0"`
-	Parallax         float64  `toml:"parallax" doc:"Parallax." unit:"mas" default:"0, infinitely far"`
-	SystemicVelocity float64  `toml:"systemic_velocity" doc:"Systemic velocity, positive receding; it moves the star through space, and nothing else." unit:"km/s" default:"0"`
+	Name              string   `toml:"name" doc:"The star's name." need:"required"`
+	Aliases           []string `toml:"aliases" doc:"Other names under which a table's star column may list it."`
+	RA                any      `toml:"ra" doc:"Right ascension: \"14 22 31.80\" in hours, minutes, seconds, or a number of degrees." need:"required"`
+	Dec               any      `toml:"dec" doc:"Declination: \"-12 04 55.1\", or a number of degrees." need:"required"`
+	Frame             string   `toml:"frame" doc:"Frame of the position and proper motion: \"ICRS\", \"B1950\" or \"B1900\"." default:"ICRS"`
+	PositionEpoch     float64  `toml:"position_epoch" doc:"Epoch of the position; of an ICRS position as a Julian year, otherwise a Besselian year." unit:"year" default:"2000 for ICRS, else that of the frame"`
+	PMRA              float64  `toml:"pm_ra" doc:"Proper motion in right ascension, with the factor cos(declination)." unit:"mas/yr" default:"0"`
+	PMDec             float64  `toml:"pm_dec" doc:"Proper motion in declination." unit:"mas/yr" default:"0"`
+	Parallax          float64  `toml:"parallax" doc:"Parallax." unit:"mas" default:"0, infinitely far"`
+	RemovePerspective bool     `toml:"remove_perspective" doc:"Whether the change of velocity by perspective since the position's epoch is taken out of all velocities." default:"false"`
+	SystemicVelocity  float64  `toml:"systemic_velocity" doc:"Systemic velocity, positive receding; it moves the star through space, and nothing else." unit:"km/s" default:"0"`
 }
 
 // Site is a place where instruments stood.
@@ -121,9 +123,19 @@ type Time struct {
 
 // Velocity says how the velocities of a source are to be read.
 type Velocity struct {
-	Unit       string `toml:"unit" doc:"\"km/s\" or \"m/s\"." default:"the unit that the table states, else km/s"`
-	Frame      string `toml:"frame" doc:"\"observatory\" (as measured), \"geocentric\", \"heliocentric\", \"barycentric\" or \"lsr\"." need:"required"`
-	Convention string `toml:"convention" doc:"How a wavelength shift became a velocity: \"optical\" (c z), \"relativistic\" or \"radio\"." default:"optical"`
+	Unit               string       `toml:"unit" doc:"\"km/s\" or \"m/s\"." default:"the unit that the table states, else km/s"`
+	Frame              string       `toml:"frame" doc:"\"observatory\" (as measured), \"geocentric\", \"heliocentric\", \"barycentric\" or \"lsr\"." need:"required"`
+	SolarMotion        *SolarMotion `toml:"solar_motion" doc:"For frame \"lsr\": the motion of the Sun that the table's author used."`
+	KeepHeliocentric   bool         `toml:"keep_heliocentric" doc:"Whether heliocentric velocities stay as printed, instead of being moved to the barycentre by the Sun's velocity along the line of sight (at most 16 m/s)." default:"false"`
+	PerspectiveRemoved bool         `toml:"perspective_removed" doc:"Whether the table has taken out the change of velocity by perspective already; it is not taken out twice." default:"false"`
+	Convention         string       `toml:"convention" doc:"How a wavelength shift became a velocity: \"optical\" (c z), \"relativistic\" or \"radio\"." default:"optical"`
+}
+
+// SolarMotion is the Sun's motion about a local standard of rest.
+type SolarMotion struct {
+	Speed float64 `toml:"speed" doc:"Speed." unit:"km/s" need:"required"`
+	RA    float64 `toml:"ra" doc:"Right ascension of the apex, ICRS." unit:"degrees" need:"required"`
+	Dec   float64 `toml:"dec" doc:"Declination of the apex, ICRS." unit:"degrees" need:"required"`
 }
 
 // Error says how the errors of a source are to be read.
@@ -157,6 +169,12 @@ type Fit struct {
 	Gauge               string    `toml:"gauge" doc:"What fixes the common system: \"reference\", \"mean\" or \"published\"." default:"reference when one is named, else mean"`
 	ReferenceInstrument string    `toml:"reference_instrument" doc:"The instrument, or instrument/era, whose zero point is 0." default:"none"`
 	Seed                uint64    `toml:"seed" doc:"Seed for whatever is drawn at random." default:"0"`
+}
+
+// NightTest says how high Sun and star can stand when a spectrum is taken.
+type NightTest struct {
+	SunBelow  *float64 `toml:"sun_below" doc:"Altitude that the Sun must be below." unit:"degrees" default:"-6"`
+	StarAbove *float64 `toml:"star_above" doc:"Altitude that the star must be above." unit:"degrees" default:"0"`
 }
 
 // Bundle says where the results go.

@@ -204,7 +204,7 @@ func TestReferenceIsComplete(t *testing.T) {
 				t.Errorf("the reference leaves out %s of %s", key, of.Name())
 			}
 			inner := field.Type
-			if inner.Kind() == reflect.Slice {
+			if inner.Kind() == reflect.Slice || inner.Kind() == reflect.Pointer {
 				inner = inner.Elem()
 			}
 			if inner.Kind() == reflect.Struct {
