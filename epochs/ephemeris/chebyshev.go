@@ -24,7 +24,7 @@ const (
 	LastJD      = 2488069.5
 	segmentDays = 32.0
 	segments    = 2854 // the last reaches beyond LastJD
-	earthNodes  = 26
+	earthNodes  = 21
 	sunNodes    = 10
 )
 

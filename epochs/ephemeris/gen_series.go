@@ -3,8 +3,9 @@
 // Command gen_series cuts the table series.txt from the VSOP87B files of the
 // npm package astronomia: gen_series FOLDER OUTPUT.
 //
-// A term is kept when it can move the Earth or, through the planet's mass,
-// the Sun by more than cutKm within 0.15 millennia of J2000.
+// A term is kept when it can move the Earth by more than earthCutKm or, through
+// the planet's mass, the Sun by more than sunCutKm within 0.15 millennia of
+// J2000.
 package main
 
 import (
@@ -20,7 +21,8 @@ import (
 )
 
 const (
-	cutKm      = 0.003
+	earthCutKm = 0.003
+	sunCutKm   = 0.02
 	auKm       = 149597870.7
 	millennia  = 0.15
 	coordinate = "LBR"
@@ -46,6 +48,10 @@ func main() {
 	fmt.Fprintln(w, "# VSOP87B, Bretagnon and Francou 1988: planet, coordinate (L B R), power of t, A, B, C")
 	fmt.Fprintln(w, "# of A cos(B + C t), t in Julian millennia of TDB from J2000, radians or au.")
 	for _, body := range bodies {
+		cutKm := sunCutKm
+		if body.name == "earth" {
+			cutKm = earthCutKm
+		}
 		text, err := os.ReadFile(filepath.Join(os.Args[1], "vsop87B"+body.name+".js"))
 		if err != nil {
 			log.Fatal(err)
