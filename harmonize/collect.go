@@ -42,13 +42,9 @@ func (p Progress) report(stage string, done, total int) {
 // Problems; the error is for a plan that allows no conversion at all, or a
 // cancelled context.
 func Collect(ctx context.Context, p *plan.Plan, progress Progress) (*Collection, error) {
-	star, err := p.Star.Direction()
+	converter, err := newConverter(p)
 	if err != nil {
-		return nil, p.FaultAt("star", "%v", err)
-	}
-	converter, err := epochs.NewConverter(star, nil)
-	if err != nil {
-		return nil, p.FaultAt("star", "%v", err)
+		return nil, err
 	}
 	c := &Collection{Plan: p}
 	for i := range p.Sources {

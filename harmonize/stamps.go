@@ -27,45 +27,46 @@ type StampSettings struct {
 
 // NewStamps returns a converter for single dates.
 func NewStamps(settings StampSettings) (*Stamps, error) {
-	star := settings.Star
-	source := plan.Source{}
-	if settings.Plan != nil {
-		star = settings.Plan.Star
-		if settings.Source != "" {
-			found, err := settings.Plan.SourceNamed(settings.Source)
-			if err != nil {
-				return nil, err
-			}
-			source = *found
-		}
+	s := &Stamps{site: settings.Site}
+	source, err := settings.source()
+	if err != nil {
+		return nil, err
 	}
-	source.Time = overlay(source.Time, settings.Time)
 	convention, err := source.Convention()
 	if err != nil {
 		return nil, err
 	}
-	s := &Stamps{site: settings.Site}
 	if s.reader, err = convention.NewStampReader(); err != nil {
 		return nil, err
 	}
-	direction, err := star.Direction()
-	if err != nil {
+	p := settings.Plan
+	if p == nil {
+		p = &plan.Plan{Path: "the command line", Star: settings.Star}
+	}
+	if s.converter, err = newConverter(p); err != nil {
 		return nil, err
 	}
-	if s.converter, err = epochs.NewConverter(direction, nil); err != nil {
-		return nil, err
+	if s.site == nil {
+		s.site, err = siteOf(p, orElse(settings.Instrument, source.Instrument))
+	} else {
+		err = s.site.Validate()
 	}
-	if s.site == nil && settings.Plan != nil {
-		if s.site, err = siteOf(settings.Plan, orElse(settings.Instrument, source.Instrument)); err != nil {
-			return nil, err
+	return s, err
+}
+
+// source returns the source of the plan, or an empty one, with the keys of
+// Time that are set.
+func (settings *StampSettings) source() (plan.Source, error) {
+	var source plan.Source
+	if settings.Plan != nil && settings.Source != "" {
+		found, err := settings.Plan.SourceNamed(settings.Source)
+		if err != nil {
+			return source, err
 		}
+		source = *found
 	}
-	if s.site != nil {
-		if err := s.site.Validate(); err != nil {
-			return nil, err
-		}
-	}
-	return s, nil
+	source.Time = overlay(source.Time, settings.Time)
+	return source, nil
 }
 
 // Convert reads a date and converts it to BJD_TDB.

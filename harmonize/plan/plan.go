@@ -7,6 +7,7 @@ package plan
 // says "required" where nothing is assumed.
 type Plan struct {
 	Title       string       `toml:"title" doc:"A title for the summary and the report." default:"the star's name"`
+	Ephemeris   string       `toml:"ephemeris" doc:"A JPL ephemeris in a file of NAIF's SPK format (.bsp), relative to the plan; dates that it does not cover use the embedded one." default:"the embedded one, VSOP87"`
 	Star        Star         `toml:"star" doc:"The star whose velocities are merged." need:"required"`
 	Sites       []Site       `toml:"site" doc:"One block for each place where an instrument stood."`
 	Instruments []Instrument `toml:"instrument" doc:"One block for each instrument: a spectrograph with one zero point and one jitter." need:"required"`
