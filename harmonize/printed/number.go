@@ -79,13 +79,13 @@ func ReadNumber(text string, style Style) (Number, error) {
 		return n, nil
 	}
 	cell = n.takeMarks(cell)
-	value, errorText := splitError(cell)
+	value, errorText, hasError := splitError(cell)
 	digits, decimals, err := decimal(value, style)
 	if err != nil {
 		return n, unreadable(text, style)
 	}
 	n.Value, n.Decimals, n.Quantum = digits, decimals, math.Pow(10, float64(-decimals))
-	if errorText == "" {
+	if !hasError {
 		return n, nil
 	}
 	e, errorDecimals, err := decimal(errorText, style)
@@ -139,14 +139,14 @@ func (n *Number) takeMarks(cell string) string {
 }
 
 // splitError splits 12.3(4) and 12.3±0.4.
-func splitError(cell string) (value, errorText string) {
+func splitError(cell string) (value, errorText string, hasError bool) {
 	if before, after, ok := strings.Cut(cell, "±"); ok {
-		return strings.TrimSpace(before), strings.TrimSpace(after)
+		return strings.TrimSpace(before), strings.TrimSpace(after), true
 	}
 	if before, after, ok := strings.Cut(cell, "("); ok && strings.HasSuffix(after, ")") && strings.TrimSpace(before) != "" {
-		return strings.TrimSpace(before), strings.TrimSuffix(after, ")")
+		return strings.TrimSpace(before), strings.TrimSuffix(after, ")"), true
 	}
-	return cell, ""
+	return cell, "", false
 }
 
 // decimal reads sign, digits, one decimal mark and an exponent.
