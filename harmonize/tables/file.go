@@ -187,6 +187,9 @@ func textTable(name string, names []string, lines []line, split func(line) ([]st
 	if len(names) > maxColumns {
 		return nil, fmt.Errorf("%w: %s has %d columns", ErrTooLarge, name, len(names))
 	}
+	if len(lines) > maxRows {
+		return nil, fmt.Errorf("%w: %s has %d rows", ErrTooLarge, name, len(lines))
+	}
 	t := &Table{File: name}
 	for i, n := range names {
 		n = strings.TrimSpace(n)

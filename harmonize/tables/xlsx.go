@@ -3,6 +3,7 @@ package tables
 import (
 	"bytes"
 	"fmt"
+	"strconv"
 	"strings"
 
 	"github.com/xuri/excelize/v2"
@@ -53,6 +54,33 @@ type sheetReader struct {
 	name, sheet string
 	date1904    bool
 	dateStyles  map[int]bool
+	seen        []oddity // in the order of their first appearance
+}
+
+// oddity counts something noteworthy, to be noted once.
+type oddity struct {
+	text  string
+	first Place
+	count int
+}
+
+func (r *sheetReader) count(place Place, text string) {
+	for i := range r.seen {
+		if r.seen[i].text == text {
+			r.seen[i].count++
+			return
+		}
+	}
+	r.seen = append(r.seen, oddity{text, place, 1})
+}
+
+// notes returns the oddities, each with its number and first place.
+func (r *sheetReader) notes() []Note {
+	var list []Note
+	for _, o := range r.seen {
+		list = append(list, Note{o.first, fmt.Sprintf("%s (%d in all)", o.text, o.count)})
+	}
+	return list
 }
 
 func (r *sheetReader) table(rows [][]string, o Options) (*Table, error) {
@@ -66,6 +94,11 @@ func (r *sheetReader) table(rows [][]string, o Options) (*Table, error) {
 	}
 	if header < 1 || header > len(rows) {
 		return nil, &CellError{Place: Place{File: r.name, Sheet: r.sheet, Row: header}, Problem: "the header row is not there", Accepted: fmt.Sprintf("header_row from 1 to %d", len(rows)), Kind: ErrNoColumn}
+	}
+	for k := range header - 1 {
+		if strings.TrimSpace(strings.Join(rows[k], "")) != "" {
+			r.count(Place{File: r.name, Sheet: r.sheet, Row: k + 1}, "row above the header, not read")
+		}
 	}
 	for i, cell := range rows[header-1] {
 		letter, err := excelize.ColumnNumberToName(i + 1)
@@ -84,6 +117,10 @@ func (r *sheetReader) table(rows [][]string, o Options) (*Table, error) {
 		}
 		t.Rows = append(t.Rows, row)
 	}
+	if len(t.Rows) > maxRows {
+		return nil, fmt.Errorf("%w: %s has %d rows", ErrTooLarge, r.name, len(t.Rows))
+	}
+	t.Notes = r.notes()
 	return t, nil
 }
 
@@ -94,7 +131,7 @@ func (r *sheetReader) row(t *Table, number int, texts []string) (Row, error) {
 		return row, fmt.Errorf("%w: %s: %w", ErrUnreadable, r.name, err)
 	}
 	if !visible {
-		t.Notes = append(t.Notes, Note{Place{File: r.name, Sheet: r.sheet, Row: number}, "the row is hidden in the workbook; it is read all the same"})
+		r.count(Place{File: r.name, Sheet: r.sheet, Row: number}, "row hidden in the workbook, read all the same")
 	}
 	for i, text := range texts {
 		if i >= len(t.Columns) {
@@ -111,9 +148,6 @@ func (r *sheetReader) row(t *Table, number int, texts []string) (Row, error) {
 }
 
 func (r *sheetReader) cell(t *Table, number, column int, text string) (Cell, error) {
-	if strings.TrimSpace(text) == "" {
-		return Cell{}, nil
-	}
 	axis := fmt.Sprintf("%s%d", t.Columns[column].Letter, number)
 	place := Place{File: r.name, Sheet: r.sheet, Row: number, Column: t.Columns[column].Letter}
 	kind, err := r.book.GetCellType(r.sheet, axis)
@@ -121,7 +155,10 @@ func (r *sheetReader) cell(t *Table, number, column int, text string) (Cell, err
 		return Cell{}, fmt.Errorf("%w: %s: %w", ErrUnreadable, place, err)
 	}
 	if formula, err := r.book.GetCellFormula(r.sheet, axis); err == nil && formula != "" {
-		t.Notes = append(t.Notes, Note{place, "a formula; its stored value is used, which may be stale"})
+		r.count(place, "formula, read by its stored value, which may be stale")
+	}
+	if strings.TrimSpace(text) == "" {
+		return Cell{}, nil
 	}
 	switch kind {
 	case excelize.CellTypeUnset, excelize.CellTypeNumber, excelize.CellTypeFormula, excelize.CellTypeDate:
@@ -136,7 +173,16 @@ func (r *sheetReader) cell(t *Table, number, column int, text string) (Cell, err
 	case excelize.CellTypeError:
 		return Cell{}, &CellError{Place: place, Text: text, Problem: "the cell holds a spreadsheet error", Accepted: "a value", Kind: ErrUnreadable}
 	}
+	if numeric(text) {
+		r.count(place, "number typed as text")
+	}
 	return Cell{Text: text, Kind: KindText}, nil
+}
+
+// numeric reports whether a text is a plain number.
+func numeric(text string) bool {
+	_, err := strconv.ParseFloat(strings.NewReplacer("−", "-", ",", ".").Replace(strings.TrimSpace(text)), 64)
+	return err == nil
 }
 
 // isDate reports whether a style shows numbers as dates: one of the built-in
