@@ -25,16 +25,23 @@ func Summary(s *harmonize.Series) string {
 		title = s.Plan.Star.Name
 	}
 	b.WriteString(title + "\n\n")
-	b.WriteString(Reading(s.Collection, s.Duplicates))
+	b.WriteString(sourceSection(s.Collection))
+	b.WriteString(duplicateSection(s.Plan, s.Duplicates))
 	b.WriteString(ZeroPointTable(s))
 	b.WriteString(signalSection(s))
 	b.WriteString(Findings(s))
+	b.WriteString(nightSection(s.Collection))
+	b.WriteString(remarkSection(s.Collection))
 	return b.String()
 }
 
-// Reading returns the part of a summary that says what was read, what was set
-// aside and what was noticed on the way.
+// Reading returns what a summary says before anything is fitted: what was read,
+// what was set aside and what was noticed on the way.
 func Reading(c *harmonize.Collection, duplicates []harmonize.DuplicateCount) string {
+	return sourceSection(c) + duplicateSection(c.Plan, duplicates) + nightSection(c) + remarkSection(c)
+}
+
+func sourceSection(c *harmonize.Collection) string {
 	var b strings.Builder
 	fmt.Fprintf(&b, "%-36s %8s %8s %10s\n", "SOURCES", "rows", "merged", "set aside")
 	total, totalMerged := 0, 0
@@ -65,9 +72,6 @@ func Reading(c *harmonize.Collection, duplicates []harmonize.DuplicateCount) str
 		}
 		b.WriteString("\n")
 	}
-	b.WriteString(duplicateSection(c.Plan, duplicates))
-	b.WriteString(nightSection(c))
-	b.WriteString(remarkSection(c))
 	return b.String()
 }
 
@@ -199,7 +203,10 @@ func remarkSection(c *harmonize.Collection) string {
 	var b strings.Builder
 	b.WriteString("REMARKS\n")
 	for _, text := range texts {
-		if sources := about[text]; len(sources) > 0 {
+		switch sources := about[text]; {
+		case len(sources) == len(c.Plan.Sources) && len(sources) > 1:
+			text += ": all sources"
+		case len(sources) > 0:
 			text += ": " + strings.Join(sources, ", ")
 		}
 		writeItem(&b, "- ", text)
