@@ -3,6 +3,7 @@ package epochs
 import (
 	"math"
 	"strconv"
+	"strings"
 )
 
 // JD is a Julian date held in two parts whose sum is the date, so that no
@@ -55,7 +56,7 @@ func (d JD) AppendText(dst []byte, decimals int) []byte {
 	}
 	d = NewJD(d.Day, d.Frac)
 	if !d.IsFinite() || d.Day < 1 || d.Day > 1e15 {
-		return strconv.AppendFloat(dst, d.Float(), 'f', decimals, 64)
+		return append(dst, strings.TrimPrefix(strconv.FormatFloat(d.Float(), 'f', decimals, 64), zeroSign(d, decimals))...)
 	}
 	scale := powersOfTen[decimals]
 	product := float64(d.Frac * scale)
@@ -87,6 +88,15 @@ func (d JD) AppendText(dst []byte, decimals int) []byte {
 		dst = append(dst, '0')
 	}
 	return append(dst, digits...)
+}
+
+// zeroSign returns the minus sign that d would be printed with although all
+// of its digits are zero, else "".
+func zeroSign(d JD, decimals int) string {
+	if d.Float() < 0 && -d.Float()*powersOfTen[decimals] <= 0.5 {
+		return "-"
+	}
+	return ""
 }
 
 // powersOfTen holds 10^0 to 10^15, each exact in a float64.

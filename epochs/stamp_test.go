@@ -4,6 +4,7 @@ import (
 	"errors"
 	"fmt"
 	"math"
+	"strconv"
 	"testing"
 
 	"pgregory.net/rapid"
@@ -253,19 +254,16 @@ func TestUncertainty(t *testing.T) {
 // of decimals reads back to the printed digits.
 func TestPrintedDatesReadBack(t *testing.T) {
 	rapid.Check(t, func(t *rapid.T) {
-		jd := epochs.NewJD(float64(rapid.IntRange(2400000, 2470000).Draw(t, "day")), rapid.Float64Range(-0.5, 0.4999).Draw(t, "fraction"))
+		jd := epochs.NewJD(float64(rapid.IntRange(2400002, 2470000).Draw(t, "day")), rapid.Float64Range(-0.5, 0.4999).Draw(t, "fraction"))
 		decimals := rapid.IntRange(0, 12).Draw(t, "decimals")
-		offset := rapid.SampledFrom([]float64{0, 2400000, 2440000, 2400000.5}).Draw(t, "offset")
+		offset := rapid.SampledFrom([]float64{0, 2400000, 2390000.25, 2400000.5}).Draw(t, "offset")
 		text := jd.Add(-offset).Text(decimals)
 		c := epochs.Convention{Form: epochs.FormJD}
 		if offset != 0 {
-			c.Offset = fmt.Sprintf("%.1f", offset)
+			c.Offset = strconv.FormatFloat(offset, 'f', -1, 64)
 		}
 		s, err := reader(t, c).Read(text)
 		if err != nil {
-			if jd.Float() < 2400001 && offset > 2400000 {
-				return // a negative remainder
-			}
 			t.Fatalf("%q less %v: %v", text, offset, err)
 		}
 		if got := s.JD.Add(-offset).Text(decimals); got != text {
