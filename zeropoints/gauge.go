@@ -11,7 +11,8 @@ import (
 // the columns' products weighted by the mean slope and the mean square of the
 // score. The means are taken over each instrument, drawn towards those of the
 // normal distribution as by five rows more, so that a few rows do not make
-// them up.
+// them up; and rows that scatter less than their published errors do not make
+// the errors smaller.
 func (s *state) covariance() *mat.SymDense {
 	l, r := s.modelLevels()
 	fitted := l.leverage(r)
@@ -62,8 +63,8 @@ func (s *state) scoreMoments(r rows, fitted []float64) (slope, square []float64)
 			sumSquare += psi * psi
 		}
 		rows := float64(len(list)) + prior
-		slope[k] = math.Max(sumSlope/rows, 0.2*normal.psiSlope)
-		square[k] = sumSquare / rows
+		slope[k] = math.Min(math.Max(sumSlope/rows, 0.2*normal.psiSlope), normal.psiSlope)
+		square[k] = math.Max(sumSquare/rows, normal.psiSquare)
 	}
 	return slope, square
 }
@@ -84,42 +85,59 @@ func sandwich(a, b *mat.SymDense) *mat.SymDense {
 	return out
 }
 
-// pseudoInverse inverts a symmetric matrix after scaling its diagonal to 1,
-// leaving out directions that the data do not determine.
+// pseudoInverse inverts a symmetric matrix, leaving out directions that the
+// data do not determine.
 func pseudoInverse(a *mat.SymDense) *mat.SymDense {
 	n := a.SymmetricDim()
-	scale := make([]float64, n)
-	scaled := mat.NewSymDense(n, nil)
-	for i := range n {
-		scale[i] = 1
-		if d := a.At(i, i); d > 0 {
-			scale[i] = 1 / math.Sqrt(d)
-		}
-	}
-	for i := range n {
-		for j := i; j < n; j++ {
-			scaled.SetSym(i, j, a.At(i, j)*scale[i]*scale[j])
-		}
-	}
-	var eigen mat.EigenSym
 	out := mat.NewSymDense(n, nil)
-	if !eigen.Factorize(scaled, true) {
-		return out
-	}
-	values := eigen.Values(nil)
-	var vectors mat.Dense
-	eigen.VectorsTo(&vectors)
-	for m, value := range values {
-		if value <= degenerateBelow*float64(n) {
+	d := newDirections(a)
+	for m, value := range d.values {
+		if d.isFree(m) {
 			continue
 		}
 		for i := range n {
 			for j := i; j < n; j++ {
-				out.SetSym(i, j, out.At(i, j)+vectors.At(i, m)*vectors.At(j, m)/value*scale[i]*scale[j])
+				out.SetSym(i, j, out.At(i, j)+d.vectors.At(i, m)*d.vectors.At(j, m)/value*d.scale[i]*d.scale[j])
 			}
 		}
 	}
 	return out
+}
+
+// directions are the eigenvectors of a normal matrix whose diagonal was scaled
+// to 1, so that their values do not depend on the units of the columns.
+type directions struct {
+	values  []float64
+	vectors mat.Dense
+	scale   []float64 // what each row and column was multiplied with
+}
+
+func newDirections(a *mat.SymDense) *directions {
+	n := a.SymmetricDim()
+	d := &directions{scale: make([]float64, n)}
+	scaled := mat.NewSymDense(n, nil)
+	for i := range n {
+		d.scale[i] = 1
+		if v := a.At(i, i); v > 0 {
+			d.scale[i] = 1 / math.Sqrt(v)
+		}
+	}
+	for i := range n {
+		for j := i; j < n; j++ {
+			scaled.SetSym(i, j, a.At(i, j)*d.scale[i]*d.scale[j])
+		}
+	}
+	var eigen mat.EigenSym
+	if eigen.Factorize(scaled, true) { // fails only on numbers that are not finite, which validation keeps out
+		d.values = eigen.Values(nil)
+		eigen.VectorsTo(&d.vectors)
+	}
+	return d
+}
+
+// isFree reports whether the data leave a direction undetermined.
+func (d *directions) isFree(m int) bool {
+	return d.values[m] <= degenerateBelow*float64(len(d.values))
 }
 
 // shares returns what the common level is made of: the level subtracted from

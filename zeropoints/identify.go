@@ -175,33 +175,17 @@ func (s *state) freeMoves() [][]float64 {
 	for i, k := range r.instrument {
 		addProduct(a, k, k0, r.columns[i*width:(i+1)*width], r.weight[i])
 	}
-	scale := make([]float64, size)
-	for i := range scale {
-		scale[i] = 1 / math.Sqrt(math.Max(a.At(i, i), math.SmallestNonzeroFloat64))
-	}
-	scaled := mat.NewSymDense(size, nil)
-	for i := range size {
-		for j := i; j < size; j++ {
-			scaled.SetSym(i, j, a.At(i, j)*scale[i]*scale[j])
-		}
-	}
-	var eigen mat.EigenSym
-	if !eigen.Factorize(scaled, true) {
-		return nil
-	}
-	var vectors mat.Dense
-	eigen.VectorsTo(&vectors)
+	d := newDirections(a)
 	var moves [][]float64
-	for m, value := range eigen.Values(nil) {
-		if value > degenerateBelow*float64(size) {
+	for m := range d.values {
+		if !d.isFree(m) {
 			continue
 		}
 		move := make([]float64, size)
-		length := 0.0
 		for i := range move {
-			move[i] = vectors.At(i, m) * scale[i]
-			length = math.Max(length, math.Abs(move[i]))
+			move[i] = d.vectors.At(i, m) * d.scale[i]
 		}
+		length := largest(move)
 		for i := range move {
 			move[i] /= length
 		}

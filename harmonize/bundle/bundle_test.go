@@ -126,3 +126,28 @@ func TestWriteRefuses(t *testing.T) {
 		t.Errorf("the letter reads %q, %v", text, err)
 	}
 }
+
+// TestReadmeShowsTheDemo: the summary in the README is the one printed now.
+func TestReadmeShowsTheDemo(t *testing.T) {
+	readme, err := os.ReadFile("../../README.md")
+	if err != nil {
+		t.Fatal(err)
+	}
+	p, err := plan.Load("../../testdata/demo/plan.toml")
+	if err != nil {
+		t.Fatal(err)
+	}
+	series, err := harmonize.Merge(context.Background(), p, nil)
+	if err != nil {
+		t.Fatal(err)
+	}
+	results, _, found := strings.Cut(bundle.Summary(series), "NIGHT TEST")
+	if !found {
+		t.Fatal("the summary says nothing of the night test")
+	}
+	for _, line := range strings.Split(strings.TrimSpace(results), "\n") {
+		if line != "" && !strings.Contains(string(readme), "\n    "+line+"\n") {
+			t.Errorf("the README does not show %q", line)
+		}
+	}
+}

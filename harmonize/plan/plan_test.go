@@ -3,6 +3,7 @@ package plan_test
 import (
 	"bytes"
 	"errors"
+	"os"
 	"reflect"
 	"strings"
 	"testing"
@@ -173,6 +174,22 @@ func TestAllFaultsAtOnce(t *testing.T) {
 	_, err := plan.Parse("plan.toml", []byte(text))
 	if err == nil || !strings.Contains(err.Error(), "Dale") || !strings.Contains(err.Error(), "helio") {
 		t.Errorf("got %v, want both faults", err)
+	}
+}
+
+// TestReadmePlan: the plan in the README is one.
+func TestReadmePlan(t *testing.T) {
+	readme, err := os.ReadFile("../../README.md")
+	if err != nil {
+		t.Fatal(err)
+	}
+	_, rest, found := strings.Cut(string(readme), "```toml\n")
+	text, _, closed := strings.Cut(rest, "```")
+	if !found || !closed {
+		t.Fatal("the README holds no plan")
+	}
+	if _, err := plan.Parse("README.md", []byte(text)); err != nil {
+		t.Error(err)
 	}
 }
 
