@@ -245,6 +245,21 @@ func (s *state) reportJitters(out *Solution) {
 	}
 }
 
+// semiAmplitude returns the half range of a harmonic, from 0, with its error
+// carried over from the cosine and the sine.
+func (s *state) semiAmplitude(full *mat.SymDense, harmonic int) Term {
+	j := s.problem.Signal.TrendDegree + 2*harmonic
+	cosine, sine := s.c[j], s.c[j+1]
+	size := math.Hypot(cosine, sine)
+	at := len(s.level) + j
+	variance := cosine*cosine*full.At(at, at) + 2*cosine*sine*full.At(at, at+1) + sine*sine*full.At(at+1, at+1)
+	sigma := 0.0
+	if size > 0 {
+		sigma = math.Sqrt(math.Max(variance, 0)) / size
+	}
+	return Term{fmt.Sprintf("harmonic %d, semi-amplitude", harmonic+1), "km/s", size, sigma}
+}
+
 // reportTerms fills in the parameters of the signal.
 func (s *state) reportTerms(out *Solution, full *mat.SymDense, share []float64, common, variance float64) {
 	n := len(s.level)
@@ -262,6 +277,9 @@ func (s *state) reportTerms(out *Solution, full *mat.SymDense, share []float64, 
 	}
 	if s.basis.periodDays <= 0 {
 		return
+	}
+	for h := range s.problem.Signal.Harmonics {
+		out.Terms = append(out.Terms, s.semiAmplitude(full, h))
 	}
 	linear := s.basis.width()
 	out.PeriodSigmaDays = s.basis.periodDays * math.Sqrt(math.Max(full.At(n+linear, n+linear), 0))
