@@ -135,7 +135,7 @@ func (r *rowReader) findSetAside() error {
 			for _, number := range rule.Rows {
 				i, ok := byNumber[number]
 				if !ok {
-					errs = append(errs, fmt.Errorf("set_aside[%d]: %s has no data row %d; its rows are %s", k, r.source.File, number, r.rowRange()))
+					errs = append(errs, fmt.Errorf("set_aside %d: %s has no data row %d; its rows are %s", k+1, r.source.File, number, r.rowRange()))
 					continue
 				}
 				r.aside[i] = rule.Reason
@@ -144,7 +144,7 @@ func (r *rowReader) findSetAside() error {
 		}
 		column, err := r.table.Column(rule.Column)
 		if err != nil {
-			errs = append(errs, fmt.Errorf("set_aside[%d]: %w", k, err))
+			errs = append(errs, fmt.Errorf("set_aside %d: %w", k+1, err))
 			continue
 		}
 		matched := 0
@@ -155,7 +155,7 @@ func (r *rowReader) findSetAside() error {
 			}
 		}
 		if matched == 0 {
-			errs = append(errs, fmt.Errorf("set_aside[%d]: no row has the text %q in column %q", k, rule.Equals, rule.Column))
+			errs = append(errs, fmt.Errorf("set_aside %d: no row has the text %q in column %q", k+1, rule.Equals, rule.Column))
 		}
 	}
 	return errors.Join(errs...)

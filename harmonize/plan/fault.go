@@ -3,7 +3,9 @@ package plan
 import (
 	"errors"
 	"fmt"
+	"regexp"
 	"sort"
+	"strconv"
 	"strings"
 )
 
@@ -13,7 +15,7 @@ var ErrPlan = errors.New("plan: not usable")
 // Fault is one thing wrong with a plan.
 type Fault struct {
 	Line int    // counted from 1
-	Key  string // such as "source.time.form"
+	Key  string // such as "source[1].time.form", numbers from 0
 	Text string // what is wrong, and what would be accepted
 }
 
@@ -27,9 +29,23 @@ type Faults struct {
 func (f *Faults) Error() string {
 	lines := make([]string, len(f.List))
 	for i, fault := range f.List {
-		lines[i] = fmt.Sprintf("%s, line %d, %s: %s", f.Path, fault.Line, fault.Key, fault.Text)
+		lines[i] = fmt.Sprintf("%s, line %d, %s: %s", f.Path, fault.Line, countedFromOne(fault.Key), fault.Text)
 	}
 	return strings.Join(lines, "\n")
+}
+
+var numberInKey = regexp.MustCompile(`\[\d+\]`)
+
+// countedFromOne writes a key as a person counts: "source[1].time" is the time
+// of source 2.
+func countedFromOne(key string) string {
+	return numberInKey.ReplaceAllStringFunc(key, func(number string) string {
+		n, err := strconv.Atoi(strings.Trim(number, "[]"))
+		if err != nil {
+			return number
+		}
+		return fmt.Sprintf(" %d", n+1)
+	})
 }
 
 // Unwrap returns ErrPlan.
