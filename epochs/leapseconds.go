@@ -45,32 +45,53 @@ var utcSegments = []utcSegment{
 	{54832, 34, 0, 0}, {56109, 35, 0, 0}, {57204, 36, 0, 0}, {57754, 37, 0, 0}, // 2017 January 1
 }
 
-// utcSegmentOf returns the segment of a day, by its MJD at 0h.
-func utcSegmentOf(mjd float64) (utcSegment, error) {
-	i := sort.Search(len(utcSegments), func(i int) bool { return utcSegments[i].from > mjd })
-	if i == 0 {
-		return utcSegment{}, fmt.Errorf("%w before 1960 January 1 (MJD 36934), at MJD %.0f", ErrUTC, mjd)
+// utcSegmentOf returns the place in the table of a day's segment, by its MJD
+// at 0h.
+func utcSegmentOf(mjd float64) (int, error) {
+	last := len(utcSegments) - 1
+	if mjd >= utcSegments[last].from { // the years since 2017
+		return last, nil
 	}
-	return utcSegments[i-1], nil
+	i := sort.Search(last, func(i int) bool { return utcSegments[i].from > mjd })
+	if i == 0 {
+		return 0, fmt.Errorf("%w before 1960 January 1 (MJD 36934), at MJD %.0f", ErrUTC, mjd)
+	}
+	return i - 1, nil
+}
+
+// at returns TAI - UTC in seconds on a day, by its MJD at 0h, at a fraction of
+// the day.
+func (s *utcSegment) at(mjd, fraction float64) float64 {
+	return s.seconds + (mjd+fraction-s.refMJD)*s.rate
 }
 
 // taiMinusUTC returns TAI - UTC in seconds on a day, by its MJD at 0h, at a
 // fraction of the day.
 func taiMinusUTC(mjd, fraction float64) (float64, error) {
-	s, err := utcSegmentOf(mjd)
-	return s.seconds + (mjd+fraction-s.refMJD)*s.rate, err
+	i, err := utcSegmentOf(mjd)
+	if err != nil {
+		return 0, err
+	}
+	return utcSegments[i].at(mjd, fraction), nil
 }
 
 // dayLengthS returns the length of a UTC day in UTC seconds: 86401 when it
-// ends with a leap second. The small steps before 1972 are left out, as in
-// ERFA's eraUtctai they are not.
+// ends with a leap second. The small steps before 1972 are left out: they lie
+// between two days.
 func dayLengthS(mjd float64) float64 {
-	today, err1 := utcSegmentOf(mjd)
-	tomorrow, err2 := utcSegmentOf(mjd + 1)
-	if err1 != nil || err2 != nil || tomorrow.from != mjd+1 || tomorrow.rate != 0 || today.rate != 0 {
+	i, err := utcSegmentOf(mjd)
+	if err != nil {
 		return SecondsPerDay
 	}
-	return SecondsPerDay + tomorrow.seconds - today.seconds
+	return lengthOfDayIn(i, mjd)
+}
+
+// lengthOfDayIn is dayLengthS for a day of a known segment.
+func lengthOfDayIn(i int, mjd float64) float64 {
+	if i+1 == len(utcSegments) || utcSegments[i+1].from != mjd+1 || utcSegments[i].rate != 0 {
+		return SecondsPerDay
+	}
+	return SecondsPerDay + utcSegments[i+1].seconds - utcSegments[i].seconds
 }
 
 // TAI returns the same instant on TAI. UTC is a quasi Julian date: on a day
@@ -79,15 +100,11 @@ func dayLengthS(mjd float64) float64 {
 // parts, below 0.01 ns.
 func (u UTC) TAI() (TAI, error) {
 	mjd, fraction := mjdOf(u.JD)
-	midnight, err := taiMinusUTC(mjd, 0)
+	i, err := utcSegmentOf(mjd)
 	if err != nil {
 		return TAI{}, err
 	}
-	drift, err := taiMinusUTC(mjd, fraction)
-	if err != nil {
-		return TAI{}, err
-	}
-	seconds := fraction*dayLengthS(mjd) + midnight + (drift - midnight)
+	seconds := fraction*lengthOfDayIn(i, mjd) + utcSegments[i].at(mjd, fraction)
 	return TAI{NewJD(mjd+2400001, -0.5).AddSeconds(seconds)}, nil
 }
 
@@ -95,19 +112,16 @@ func (u UTC) TAI() (TAI, error) {
 func (t TAI) UTC() (UTC, error) {
 	mjd, _ := mjdOf(t.JD)
 	for day := mjd + 1; ; day-- { // the UTC day begins before the TAI day of the same number or after
-		offset, err := taiMinusUTC(day, 0)
+		i, err := utcSegmentOf(day)
 		if err != nil {
 			return UTC{}, err
 		}
-		seconds := t.Sub(NewJD(day+2400001, -0.5))*SecondsPerDay - offset
+		segment := &utcSegments[i]
+		seconds := t.Sub(NewJD(day+2400001, -0.5))*SecondsPerDay - segment.at(day, 0)
 		if seconds < 0 {
 			continue
 		}
-		segment, err := utcSegmentOf(day)
-		if err != nil {
-			return UTC{}, err
-		}
-		fraction := seconds / (dayLengthS(day) + segment.rate)
+		fraction := seconds / (lengthOfDayIn(i, day) + segment.rate)
 		return UTC{NewJD(day+2400001, -0.5).Add(fraction)}, nil
 	}
 }
