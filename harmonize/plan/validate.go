@@ -4,6 +4,8 @@ import (
 	"fmt"
 	"math"
 	"strings"
+
+	"platemeld/harmonize/tables"
 )
 
 // validation gathers the faults of one plan.
@@ -169,7 +171,7 @@ func (v *validation) sources() {
 		v.unique(seen, key+".name", s.Name, "source")
 		v.need(key+".file", s.File, "the table's file")
 		v.need(key+".reference", s.Reference, "where the table was published")
-		v.oneOf(key+".format", s.Format, "xlsx", "delimited", "columns", "fixed")
+		v.oneOf(key+".format", s.Format, tables.Formats()...)
 		v.sourceInstrument(key, s)
 		v.columns(key, s)
 		v.sourceTime(key, s)

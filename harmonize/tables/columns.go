@@ -3,9 +3,9 @@ package tables
 import "strings"
 
 // readColumns reads cells set apart by blanks.
-func readColumns(name, text string, o Options) (*Table, error) {
+func readColumns(name string, content []byte, o Options) (*Table, error) {
 	split := func(l line) ([]string, error) { return strings.Fields(l.text), nil }
-	names, rest, err := splitHeader(name, dataLines(text, o), o, split)
+	names, rest, err := splitHeader(name, dataLines(decoded(content), o), o, split)
 	if err != nil {
 		return nil, err
 	}

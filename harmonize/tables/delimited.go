@@ -18,7 +18,8 @@ func findDelimiter(header string) rune {
 
 // readDelimited reads cells set apart by commas, semicolons, tabs or bars,
 // in quotation marks where they need them.
-func readDelimited(name, text string, o Options) (*Table, error) {
+func readDelimited(name string, content []byte, o Options) (*Table, error) {
+	text := decoded(content)
 	lines := dataLines(text, o)
 	delimiter := findDelimiter(firstLine(text, o))
 	if o.Delimiter != "" {

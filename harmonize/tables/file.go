@@ -36,24 +36,40 @@ func Read(path string, o Options) (*Table, error) {
 	if format == "" {
 		format = sniff(strings.TrimSuffix(name, ".gz"), content, o)
 	}
-	var t *Table
-	switch format {
-	case "xlsx":
-		t, err = readWorkbook(name, content, o)
-	case "fixed":
-		t, err = readFixed(name, content, o)
-	case "columns":
-		t, err = readColumns(name, decoded(content), o)
-	case "delimited":
-		t, err = readDelimited(name, decoded(content), o)
-	default:
-		return nil, fmt.Errorf("%w: format %q; accepted: xlsx, delimited, columns, fixed", ErrUnreadable, format)
+	for _, f := range formats {
+		if f.word != format {
+			continue
+		}
+		t, err := f.read(name, content, o)
+		if err != nil {
+			return nil, err
+		}
+		t.File, t.Format = name, format
+		return t, nil
 	}
-	if err != nil {
-		return nil, err
+	return nil, fmt.Errorf("%w: format %q; accepted: %s", ErrUnreadable, format, strings.Join(Formats(), ", "))
+}
+
+// formats lists the formats and their readers; a new one is a line here and a
+// file with its reader. The reader gets the file's name for messages and its
+// unpacked content.
+var formats = []struct {
+	word string
+	read func(name string, content []byte, o Options) (*Table, error)
+}{
+	{"xlsx", readWorkbook},
+	{"delimited", readDelimited},
+	{"columns", readColumns},
+	{"fixed", readFixed},
+}
+
+// Formats returns the words for the formats.
+func Formats() []string {
+	words := make([]string, len(formats))
+	for i, f := range formats {
+		words[i] = f.word
 	}
-	t.File, t.Format = name, format
-	return t, nil
+	return words
 }
 
 // unpacked returns the content of a file, without its gzip packing.
