@@ -25,6 +25,15 @@ func TestDeltaT(t *testing.T) {
 	}
 }
 
+// TestDeltaTOfTheHandbook: 1977 February 18, +47.6 s (Meeus, Astronomical
+// Algorithms, example 10.a, printed to 0.1 s).
+func TestDeltaTOfTheHandbook(t *testing.T) {
+	got, _, err := DeltaT(2443192.65)
+	if err != nil || !(math.Abs(got-47.6) <= 0.1) {
+		t.Errorf("got %.3f s, %v; want 47.6", got, err)
+	}
+}
+
 // TestDeltaTAgainstSpline: the spline of Stephenson, Morrison and Hohenkerk
 // 2016 (Table S15.2020) differs by at most 2.15 s in 1880-1900, 1.20 s in
 // 1900-1925 and 0.63 s in 1925-1955 (skyfield 1.45); never by more than three

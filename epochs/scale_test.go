@@ -77,6 +77,15 @@ func TestScales(t *testing.T) {
 	near("eraTaiutc", utc.JD, 2453750.5, .8921006945555555556, 1e-12)
 	near("eraTcbtdb", TCB{NewJD(2453750.5, 0.893019599)}.TDB().JD, 2453750.5, .8928551362746343397, 1e-12)
 
+	// Delta T of the tests eraTtut1 and eraUt1tt, DUT1 of eraUtcut1.
+	near("eraTtut1", TT{NewJD(2453750.5, .892855139)}.AddSeconds(-64.8499), 2453750.5, .8921045614537037037, 1e-12)
+	near("eraUt1tt", UT1{NewJD(2453750.5, .892104561)}.AddSeconds(64.8499), 2453750.5, .8928551385462962963, 1e-12)
+	near("eraUtcut1", UTC{NewJD(2453750.5, .892100694)}.AddSeconds(.3341), 2453750.5, .8921045608981481481, 1e-12)
+	// The light time of the astronomical unit (IAU 2012 Resolution B2 and SI).
+	if got := auKm / lightKmS; !(math.Abs(got-499.004783836) <= 1e-9) {
+		t.Errorf("au/c: got %.10f s, want 499.004783836", got)
+	}
+
 	clock := (21*3600 + 24*60 + 37.5) / SecondsPerDay
 	tai, err = UTC{NewJD(2453750.5, clock)}.TAI()
 	if err != nil {

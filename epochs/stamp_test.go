@@ -36,6 +36,8 @@ func TestReadStamp(t *testing.T) {
 	oldStyle.Calendar = epochs.CalendarJulian
 	oldNoon := oldStyle
 	oldNoon.DayStart = epochs.DayStartNoon
+	localNoon := epochs.Convention{Form: epochs.FormCivil, Scale: epochs.ScaleLocalMean, DayStart: epochs.DayStartNoon}
+	noonUT := epochs.Convention{Form: epochs.FormCivil, Scale: epochs.ScaleUT, DayStart: epochs.DayStartNoon}
 	offset := func(text string) epochs.Convention {
 		return epochs.Convention{Form: epochs.FormJD, Offset: text, Scale: epochs.ScaleUTC}
 	}
@@ -51,6 +53,8 @@ func TestReadStamp(t *testing.T) {
 		{"the day from midnight", civil, "1908 Jan 14.62", 2417955, 0.12, 0.01},
 		{"almanacs of 1924: December 31.5 from noon is January 1.0 from midnight", gmat, "1924 Dec 31.5", 2424151.5, 0, 0.1},
 		{"noon at the end of 1899", civil, "1899 Dec 31.5", 2415020, 0, 0.1},
+		{"local mean time from noon (Argelander's 1860 Jan 04 17h13m28s = 1860 Jan 04.717685, \"A pitfall in reading astronomical daytime arguments before 1925\")", localNoon, "1860 Jan 4 17h 13m 28s", 2400414, 0.717685185, 1.0 / 86400},
+		{"a manual of 2000 that still counts from noon: June 3 is 2451699", noonUT, "2000 Jun 3.0", 2451699, 0, 0.1},
 		{"Sputnik (Meeus 7.a)", civil, "1957 Oct 4.81", 2436116, 0.31, 0.01},
 		{"month with a dot", civil, "1908 Jan. 14.62", 2417955, 0.12, 0.01},
 		{"month first", civil, "Jan. 14.62, 1908", 2417955, 0.12, 0.01},
