@@ -3,6 +3,7 @@ package harmonize
 import (
 	"context"
 	"fmt"
+	"math"
 
 	"platemeld/epochs"
 	"platemeld/harmonize/plan"
@@ -112,10 +113,26 @@ func (c *Collection) remarkOn(index, rows int) {
 			}
 		}
 	}
+	c.remarkOnSun(source, c.Measurements[len(c.Measurements)-rows:])
 	for bit := epochs.EpochFlag(1); len(flags) > 0; bit <<= 1 {
 		if n := flags[bit]; n > 0 {
 			c.Remarks = append(c.Remarks, Remark{Source: source.Name, Text: bit.String(), Rows: n})
 			delete(flags, bit)
 		}
+	}
+}
+
+// remarkOnSun says by how much heliocentric velocities were moved: the Sun's
+// motion about the barycentre is periodic and looks like a long orbit.
+func (c *Collection) remarkOnSun(source *plan.Source, measurements []Measurement) {
+	least, most := math.Inf(1), math.Inf(-1)
+	for i := range measurements {
+		if m := &measurements[i]; m.Fate == FateMerged && m.Velocity.Terms.SunMs != 0 {
+			least, most = math.Min(least, m.Velocity.Terms.SunMs), math.Max(most, m.Velocity.Terms.SunMs)
+		}
+	}
+	if least <= most {
+		c.Remarks = append(c.Remarks, Remark{Source: source.Name,
+			Text: fmt.Sprintf("heliocentric velocities moved to the barycentre by %+.1f to %+.1f m/s", least, most)})
 	}
 }
