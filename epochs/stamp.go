@@ -116,8 +116,8 @@ func (r *StampReader) readJD(text string) (Stamp, error) {
 // readYear reads a year with a fraction.
 func (r *StampReader) readYear(text string) (Stamp, error) {
 	n, digits, err := parseDecimal(text, r.convention.DecimalComma)
-	if err != nil || digits != 4 {
-		return Stamp{}, r.unreadable("a year of four digits with a fraction, such as 1908.62")
+	if err != nil || digits != 4 || !(n.whole >= 1800 && n.whole < 2200) {
+		return Stamp{}, r.unreadable("a year of four digits from 1800 to 2200 with a fraction, such as 1908.62")
 	}
 	var jd JD
 	length := 365.25

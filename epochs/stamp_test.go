@@ -144,6 +144,8 @@ func TestRefusedStamps(t *testing.T) {
 		{jd, "18263.7", epochs.ErrUnreadable},              // the offset is missing
 		{jd, "24S3162.5", epochs.ErrUnreadable},
 		{jd, "2453162,5", epochs.ErrUnreadable},
+		{epochs.Convention{Form: epochs.FormJulianYear}, "-0100", epochs.ErrUnreadable},
+		{epochs.Convention{Form: epochs.FormCivilYear}, "0008.62", epochs.ErrUnreadable},
 		{jd, "NaN", epochs.ErrUnreadable},
 		{jd, "1e400", epochs.ErrUnreadable},
 	} {
