@@ -22,6 +22,13 @@
 // a jitter for the zero point that was fitted to it. A jitter of zero is an
 // answer; then an upper limit is given.
 //
+// Rows without a published error have the jitter alone for an error, so that
+// it must not be zero. If more than half of an instrument's velocities were
+// rounded to the same number its jitter is that of the normal distribution;
+// if its rows are fewer than three, or all equal, it is the median scatter of
+// the other instruments, and if there is none no error has a scale; findings say
+// either.
+//
 // What cannot be known is said: the rank of the design is looked at before
 // any number is given, and a zero point that the data do not tie to the
 // common level is called unanchored.

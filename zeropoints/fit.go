@@ -4,6 +4,7 @@ import (
 	"context"
 	"fmt"
 	"math"
+	"slices"
 	"sort"
 
 	"gonum.org/v1/gonum/mat"
@@ -50,7 +51,8 @@ type state struct {
 	level    []float64
 	c        []float64 // coefficients of the signal, without that of the period
 	members  [][]int   // rows by instrument
-	pooled   []bool    // the jitter is the other instruments', for want of rows
+	bare     []bool    // a row of the instrument has no published error: only the jitter gives it one
+	pooled   []bool    // the jitter is the other instruments', for want of scatter of its own
 }
 
 // Fit solves the problem. Errors wrap ErrProblem, or are the context's.
@@ -76,13 +78,14 @@ func newState(p *Problem) *state {
 		rows:     rows{instrument: make([]int, n), weight: make([]float64, n)},
 		velocity: make([]float64, n), known: make([]float64, n), residual: make([]float64, n),
 		jitter: make([]float64, len(p.Instruments)), level: make([]float64, len(p.Instruments)),
-		members: make([][]int, len(p.Instruments)), pooled: make([]bool, len(p.Instruments))}
+		members: make([][]int, len(p.Instruments)), bare: make([]bool, len(p.Instruments)), pooled: make([]bool, len(p.Instruments))}
 	if p.Loss == LossGaussian {
 		s.loss = LossGaussian
 	}
 	for i, o := range p.Observations {
 		s.rows.instrument[i], s.velocity[i] = o.Instrument, o.VelocityKms
 		s.members[o.Instrument] = append(s.members[o.Instrument], i)
+		s.bare[o.Instrument] = s.bare[o.Instrument] || o.SigmaKms == 0
 	}
 	for k, list := range s.members {
 		s.level[k], s.jitter[k] = medianAndVariance(s.velocity, list)
@@ -92,6 +95,12 @@ func newState(p *Problem) *state {
 	}
 	s.c = make([]float64, s.basis.width())
 	s.refill()
+	for k, list := range s.members {
+		if s.bare[k] && s.jitter[k] == 0 { // more than half of its rows agree, as rounded ones may
+			s.jitter[k] = s.plainJitter(list, make([]float64, n))
+		}
+	}
+	s.poolJitters()
 	return s
 }
 
@@ -245,18 +254,20 @@ const fewestForJitter = 3
 func (s *state) updateJitters() float64 {
 	l, r := s.modelLevels()
 	fitted := l.leverage(r)
-	changed := 0.0
+	before := slices.Clone(s.jitter)
 	for k, list := range s.members {
-		before := s.jitter[k]
 		j := s.jitterRows(list, fitted)
 		s.jitter[k] = j.solve(0, s.loss, s.normal)
-		mean := smallestVariance
-		for _, i := range list {
-			mean += s.known[i] / float64(len(list))
+		if s.bare[k] && s.jitter[k] == 0 {
+			s.jitter[k] = s.plainJitter(list, fitted)
 		}
-		changed = math.Max(changed, math.Abs(s.jitter[k]-before)/(mean+s.jitter[k]))
 	}
 	s.poolJitters()
+	changed := 0.0
+	for k, list := range s.members {
+		change := math.Abs(s.jitter[k] - before[k])
+		changed = math.Max(changed, change/(smallestVariance+s.meanKnown(list)+s.jitter[k]))
+	}
 	return changed
 }
 
@@ -270,14 +281,27 @@ func (s *state) jitterRows(list []int, fitted []float64) jitterRows {
 	return j
 }
 
-// poolJitters gives an instrument that has too few rows for a jitter, and no
-// published errors to stand on, the median variance of the others.
+// plainJitter is the jitter by the restricted likelihood of the normal
+// distribution. It stands in where the robust one is zero and rows without a
+// published error would weigh without limit: when most velocities of an
+// instrument were rounded to the same number, the others look like outliers.
+func (s *state) plainJitter(list []int, fitted []float64) float64 {
+	j := s.jitterRows(list, fitted)
+	variance := j.solve(0, LossGaussian, LossGaussian.atNormal())
+	if variance <= 10*smallestVariance { // equal velocities show no scatter
+		return 0
+	}
+	return variance
+}
+
+// poolJitters gives an instrument without published errors whose rows are too
+// few, or too equal, to show a scatter the median variance of the others.
 func (s *state) poolJitters() {
 	var others []float64
 	for k, list := range s.members {
-		s.pooled[k] = len(list) < fewestForJitter && s.problem.Observations[list[0]].SigmaKms == 0
+		s.pooled[k] = s.bare[k] && (len(list) < fewestForJitter || s.jitter[k] == 0)
 		if !s.pooled[k] {
-			others = append(others, s.jitter[k]+s.known[list[0]])
+			others = append(others, s.jitter[k]+s.meanKnown(list))
 		}
 	}
 	if len(others) == 0 {
@@ -291,6 +315,19 @@ func (s *state) poolJitters() {
 	}
 }
 
+// meanKnown is the mean variance without jitter of a list of rows.
+func (s *state) meanKnown(list []int) float64 {
+	sum := 0.0
+	for _, i := range list {
+		sum += s.known[i]
+	}
+	return sum / float64(len(list))
+}
+
+// scaleless reports whether nothing says how large any error is: no
+// instrument has published errors, or rows that show a scatter.
+func (s *state) scaleless() bool { return !slices.Contains(s.pooled, false) }
+
 // solution puts the converged state in order.
 func (s *state) solution(iterations int) *Solution {
 	n := len(s.velocity)
@@ -303,6 +340,9 @@ func (s *state) solution(iterations int) *Solution {
 	}
 	if iterations >= maxIterations {
 		out.Findings = append(out.Findings, Finding{Kind: FindingUnsettled, Text: fmt.Sprintf("the fit had not settled after %d rounds; its numbers are not final", maxIterations)})
+	}
+	if s.scaleless() {
+		out.Findings = append(out.Findings, Finding{Kind: FindingNoScale, Text: fmt.Sprintf("nothing says how large the errors are: no instrument has a published error on every row, or %d rows without one that differ; the errors given for the zero points mean nothing until one instrument has a default error", fewestForJitter)})
 	}
 	s.report(out)
 	return out

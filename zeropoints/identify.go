@@ -25,6 +25,7 @@ const (
 	FindingFewRows                       // a jitter that the rows cannot show
 	FindingUnsettled                     // the iteration did not settle
 	FindingPeriod                        // the period is not well determined
+	FindingNoScale                       // nothing says how large any error is
 )
 
 // The variance of a zero point over that with the signal known, from which on
@@ -223,7 +224,7 @@ func (s *state) names(list []int) string {
 func (s *state) reportJitters(out *Solution) {
 	l, r := s.modelLevels()
 	fitted := l.leverage(r)
-	var few []int
+	var few, pooled []int
 	for k, list := range s.members {
 		z := &out.ZeroPoints[k]
 		j := s.jitterRows(list, fitted)
@@ -235,13 +236,21 @@ func (s *state) reportJitters(out *Solution) {
 			z.JitterIsLimit, z.JitterLowKms = true, 0
 			z.JitterHighKms = math.Sqrt(j.solve(-oneSided95, s.problem.Loss, s.normal))
 		}
-		if len(list) < fewestForJitter {
+		switch {
+		case s.pooled[k]:
+			z.JitterIsLimit, z.JitterLowKms, z.JitterHighKms = false, 0, math.Inf(1)
+			pooled = append(pooled, k)
+		case len(list) < fewestForJitter:
 			few = append(few, k)
 		}
 	}
 	if len(few) > 0 {
 		out.Findings = append(out.Findings, Finding{FindingFewRows,
-			fmt.Sprintf("%s: too few rows to show a jitter; errors as published, or the median scatter of the other instruments, stand for it", s.names(few)), few})
+			fmt.Sprintf("%s: fewer than %d rows; what jitter they show says little", s.names(few), fewestForJitter), few})
+	}
+	if len(pooled) > 0 && !s.scaleless() {
+		out.Findings = append(out.Findings, Finding{FindingFewRows,
+			fmt.Sprintf("%s: no published errors, and rows too few or too equal to show a scatter; the median scatter of the other instruments stands for it", s.names(pooled)), pooled})
 	}
 }
 

@@ -52,7 +52,7 @@ func (l Loss) psi(u float64) float64 {
 	case LossStudent:
 		return (studentFreedom + 1) * u / (studentFreedom + u*u)
 	case LossHuber:
-		return math.Max(-huberTuning, math.Min(huberTuning, u))
+		return max(-huberTuning, min(huberTuning, u))
 	default:
 		return u
 	}

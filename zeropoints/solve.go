@@ -81,7 +81,11 @@ func newLevels(r rows, instruments, width int) *levels {
 		ridge := mat.NewSymDense(width, nil)
 		ridge.CopySym(l.reduced)
 		for j := range width { // the shortest solution, up to the ridge
-			ridge.SetSym(j, j, ridge.At(j, j)+1e-8*total[j]+math.SmallestNonzeroFloat64)
+			more := 1e-8 * total[j]
+			if total[j] == 0 { // an empty column, such as a trend at one instant
+				more = 1
+			}
+			ridge.SetSym(j, j, ridge.At(j, j)+more)
 		}
 		l.reduced = ridge
 	}
