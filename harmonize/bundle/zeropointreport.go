@@ -1,6 +1,10 @@
 package bundle
 
-import "platemeld/harmonize"
+import (
+	"math"
+
+	"platemeld/harmonize"
+)
 
 // ZeroPointReport is the machine form of the zero points: all in km/s, the
 // covariance in km²/s² in the order of the list.
@@ -21,7 +25,7 @@ type ZeroPointEntry struct {
 	Group       int      `json:"group"`
 	JitterKms   float64  `json:"jitter_kms"`
 	JitterLow   float64  `json:"jitter_low_kms"`
-	JitterHigh  float64  `json:"jitter_high_kms"`
+	JitterHigh  *float64 `json:"jitter_high_kms"` // null: the rows set no limit
 	JitterLimit bool     `json:"jitter_is_limit"`
 	Inflation   float64  `json:"variance_inflation"`
 }
@@ -40,7 +44,10 @@ func NewZeroPointReport(s *harmonize.Series) ZeroPointReport {
 	for i, z := range s.ZeroPoints {
 		fit := s.Solution.ZeroPoints[i]
 		entry := ZeroPointEntry{Name: z.Name, Rows: fit.Rows, Anchored: fit.Anchored, Group: fit.Group, JitterKms: fit.JitterKms,
-			JitterLow: fit.JitterLowKms, JitterHigh: fit.JitterHighKms, JitterLimit: fit.JitterIsLimit, Inflation: fit.Inflation}
+			JitterLow: fit.JitterLowKms, JitterLimit: fit.JitterIsLimit, Inflation: fit.Inflation}
+		if !math.IsInf(fit.JitterHighKms, 0) {
+			entry.JitterHigh = &fit.JitterHighKms
+		}
 		if fit.Anchored {
 			entry.Kms, entry.SigmaKms = &fit.Kms, &fit.SigmaKms
 		}
