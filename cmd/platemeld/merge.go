@@ -25,7 +25,7 @@ func newMergeCommand() *cobra.Command {
 		Long: `Read every table of the plan, convert dates and velocities, settle repeated
 exposures, fit the zero points, and write the bundle. Nothing is written unless
 every cell can be read.`,
-		Example: "  platemeld merge testdata/demo/plan.toml\n  platemeld merge plan.toml --bundle /tmp/first-try --strict",
+		Example: "  platemeld merge testdata/demo/plan.toml\n  platemeld merge plan.toml --bundle first-try --strict",
 		Args:    cobra.ExactArgs(1),
 		RunE: func(command *cobra.Command, arguments []string) error {
 			o.planPath = arguments[0]
