@@ -9,9 +9,10 @@ import (
 var ErrDate = errors.New("epochs: no such date")
 
 // DayNumber returns the Julian date of 0h (midnight) of a civil date, a
-// number ending in .5. The date must exist, except that day 0 and a day one
-// past the end are taken as almanacs print them: 0 January is 31 December,
-// 32 December is 1 January. The month is 1 to 12, the year 1 to 9999.
+// number ending in .5. The date must exist, except for the two that almanacs
+// print: day 0 is the last day of the month before (0 January is 31 December),
+// and 32 December is 1 January. No other month may run over: a 29 February 1900
+// in a table taken for Gregorian is an Old Style date, not 1 March. The month is 1 to 12, the year 1 to 9999.
 // Algorithm: days of the months counted from March, which puts the leap day
 // at the end of the year (Meeus, Astronomical Algorithms, ch. 7, in whole
 // numbers). The error unwraps to ErrDate.
@@ -19,7 +20,7 @@ func DayNumber(calendar Calendar, year, month, day int) (float64, error) {
 	if year < 1 || year > 9999 || month < 1 || month > 12 {
 		return 0, fmt.Errorf("%w: year %d, month %d; years 1 to 9999 and months 1 to 12 are accepted", ErrDate, year, month)
 	}
-	if last := DaysInMonth(calendar, year, month); day < 0 || day > last+1 {
+	if last := DaysInMonth(calendar, year, month); day < 0 || day > last && !(month == 12 && day == 32) {
 		return 0, fmt.Errorf("%w: day %d of month %d in %d, which has %d days (%s calendar)", ErrDate, day, month, year, last, calendar)
 	}
 	y, m := year, month-3

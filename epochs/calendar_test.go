@@ -43,7 +43,7 @@ func TestDayNumber(t *testing.T) {
 		})
 	}
 	for _, test := range []struct{ year, month, day int }{
-		{1900, 2, 30}, {1900, 13, 1}, {1900, 0, 1}, {1900, 4, 32}, {0, 1, 1}, {10000, 1, 1}, {1900, 1, -1},
+		{1900, 2, 29}, {1900, 2, 30}, {1907, 2, 29}, {1908, 2, 30}, {1908, 4, 31}, {1908, 1, 32}, {1908, 12, 33}, {1900, 13, 1}, {1900, 0, 1}, {1900, 4, 32}, {0, 1, 1}, {10000, 1, 1}, {1900, 1, -1},
 	} {
 		if _, err := DayNumber(CalendarGregorian, test.year, test.month, test.day); !errors.Is(err, ErrDate) {
 			t.Errorf("%v: got %v, want ErrDate", test, err)

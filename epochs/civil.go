@@ -108,12 +108,9 @@ func (r *StampReader) twoDays(d civilDay, join, otherText string, clock bool) (c
 // Gregorian. The month is that of the convention's calendar.
 func (r *StampReader) bothCalendars(d civilDay, gregorianDay int) (civilDay, error) {
 	julian, err := DayNumber(CalendarJulian, d.year, d.month, d.day)
-	if err != nil {
-		return d, err
-	}
 	year, month, day, _ := NewJD(julian, 0).CivilDate(CalendarGregorian)
-	if day != gregorianDay {
-		// The month printed may be the Gregorian one.
+	if err != nil || day != gregorianDay {
+		// The month printed may be the Gregorian one; it can lack the Julian day.
 		previousYear, previousMonth := d.year, d.month-1
 		if previousMonth == 0 {
 			previousYear, previousMonth = d.year-1, 12

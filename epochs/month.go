@@ -6,21 +6,21 @@ import (
 )
 
 // monthNames lists how tables print each month, in English, German, French,
-// Italian and Latin; a name may be cut to three letters or more where that
+// Italian and Latin (nominative and the genitive of dates); a name may be cut to three letters or more where that
 // leaves one month only.
 var monthNames = [12][]string{
-	{"january", "januar", "jänner", "janvier", "gennaio", "ianuarius", "januarius"},
-	{"february", "februar", "feber", "février", "fevrier", "febbraio", "februarius"},
-	{"march", "märz", "maerz", "mars", "marzo", "martius", "mrz"},
+	{"january", "januar", "jänner", "janvier", "gennaio", "ianuarius", "januarius", "ianuarii", "januarii"},
+	{"february", "februar", "feber", "février", "fevrier", "febbraio", "februarius", "februarii"},
+	{"march", "märz", "maerz", "mars", "marzo", "martius", "martii", "mrz"},
 	{"april", "avril", "aprile", "aprilis"},
-	{"may", "mai", "maggio", "maius"},
-	{"june", "juni", "juin", "giugno", "iunius", "junius"},
-	{"july", "juli", "juillet", "luglio", "iulius", "julius"},
-	{"august", "août", "aout", "agosto", "augustus"},
-	{"september", "septembre", "settembre"},
-	{"october", "oktober", "octobre", "ottobre"},
-	{"november", "novembre"},
-	{"december", "dezember", "décembre", "decembre", "dicembre"},
+	{"may", "mai", "maggio", "maius", "maii"},
+	{"june", "juni", "juin", "giugno", "iunius", "junius", "iunii", "junii"},
+	{"july", "juli", "juillet", "luglio", "iulius", "julius", "iulii", "julii"},
+	{"august", "août", "aout", "agosto", "augustus", "augusti"},
+	{"september", "septembre", "settembre", "septembris"},
+	{"october", "oktober", "octobre", "ottobre", "octobris"},
+	{"november", "novembre", "novembris"},
+	{"december", "dezember", "décembre", "decembre", "dicembre", "decembris"},
 }
 
 var romanMonths = [12]string{"i", "ii", "iii", "iv", "v", "vi", "vii", "viii", "ix", "x", "xi", "xii"}

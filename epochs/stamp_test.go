@@ -65,6 +65,8 @@ func TestReadStamp(t *testing.T) {
 		{"French without the accent", civil, "1908 fevr. 14.62", 2417986, 0.12, 0.01},
 		{"Italian", civil, "1908 luglio 14.62", 2418137, 0.12, 0.01},
 		{"Latin", civil, "1908 Maius 14.62", 2418076, 0.12, 0.01},
+		{"Latin genitive, as dates have it", civil, "14.62 Ianuarii 1908", 2417955, 0.12, 0.01},
+		{"Latin genitive of September", civil, "1908 Septembris 14.62", 2418199, 0.12, 0.01},
 		{"Roman numeral", civil, "1908 VIII 14.62", 2418168, 0.12, 0.01},
 		{"month as a number", civil, "1908 01 14.62", 2417955, 0.12, 0.01},
 		{"decimal comma", comma, "1908 Jan 14,62", 2417955, 0.12, 0.01},
@@ -73,6 +75,7 @@ func TestReadStamp(t *testing.T) {
 		{"December 32", civil, "1908 Dec. 32", 2418307.5, 0, 1},
 		{"both calendars", civil, "14/27 Jan. 1908", 2417967.5, 0, 1},
 		{"both calendars, read as Old Style", oldStyle, "14/27 Jan. 1908", 2417967.5, 0, 1},
+		{"both calendars, the month the Gregorian one, which has no such Julian day", civil, "31/13 Feb. 1908", 2417984.5, 0, 1},
 		{"a night, from midnight", civil, "1908 Jan. 14-15", 2417955.5, 0, 0.5},
 		{"a night, from noon", gmat, "1908 Jan. 14-15", 2417955.5, 0, 1},
 		{"a night at the end of a month", civil, "1908 Jan. 31-1", 2417972.5, 0, 0.5},
@@ -125,7 +128,9 @@ func TestRefusedStamps(t *testing.T) {
 	}{
 		{epochs.Convention{Form: epochs.FormCivil, Scale: epochs.ScaleGMT}, "1908 Jan 14.62", epochs.ErrAmbiguous},
 		{epochs.Convention{Form: epochs.FormFields, Scale: epochs.ScaleUT}, "1908 Jan 14.62", epochs.ErrUnreadable},
-		{civil, "1908 Feb 30", nil}, // 30 is one past the end of a leap February: almanac style
+		{civil, "1900 Feb 29.25", epochs.ErrDate}, // exists only in Old Style
+		{civil, "1908 Apr 31.5", epochs.ErrDate},
+		{civil, "1908 Feb 30", epochs.ErrDate},
 		{civil, "1908 Feb 31", epochs.ErrDate},
 		{civil, "1900 Feb 30", epochs.ErrDate},
 		{civil, "08 Jan 14.62", epochs.ErrUnreadable},
